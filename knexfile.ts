@@ -1,0 +1,3 @@
+import { ownerConfig } from './server/db/config'
+
+export default ownerConfig()
