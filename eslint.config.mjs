@@ -22,6 +22,8 @@ export default withNuxt(
       'no-console': 'error',
       'vue/multi-word-component-names': 'off',
       'vue/html-self-closing': 'off',
+      // An optional prop without a default is undefined, and its type says so.
+      'vue/require-default-prop': 'off',
       'vue/no-v-html': 'error',
     },
   },
