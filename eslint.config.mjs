@@ -16,9 +16,14 @@ const noServer = [['**/server/**', '~/server/**', '~~/server/**'], 'Client code 
 export default withNuxt(
   { ignores: ['.data/**', '.output/**', 'coverage/**'] },
   {
+    files: ['**/*.ts', '**/*.vue'],
     rules: {
       '@typescript-eslint/no-explicit-any': 'error',
       '@typescript-eslint/consistent-type-imports': 'error',
+    },
+  },
+  {
+    rules: {
       'no-console': 'error',
       'vue/multi-word-component-names': 'off',
       'vue/html-self-closing': 'off',
