@@ -1,0 +1,94 @@
+import { effectivenessCrossFlow } from '../heat'
+import { AIR_HEAT_CAPACITY_J_KG_K, RATING_AIR_DENSITY_KG_M3 } from '../heat/air'
+import { FLUIDS, makeOil, oilDensity, oilHeatCapacity } from '../heat/fluids'
+import type { AirConstruction, AirCooler, AirPosition } from '../schemas/heat-input'
+
+/**
+ * A cooler known by its construction and about how large it is, for a caller who cannot say more. Rated at the common
+ * reference point with the generic conductance per face area of its construction (judgement).
+ */
+
+/** The common reference point: 100 °F between oil and air, 2 gal/min at 93.3 °C, air at 4 m/s. */
+export const REFERENCE_POINT = {
+  inletDifferenceK: 55.56,
+  oilFlowM3S: 1.26e-4,
+  oilInC: 93.3,
+  airVelocityMps: 4,
+} as const
+
+/** Conductance per face area at the reference point [W/(m² K)] and pressure drop there [Pa]; judgement. */
+export const GENERIC_COOLERS: Record<AirConstruction, { uaPerFaceArea: number; pressureDropPa: number }> = {
+  'stacked-plate': { uaPerFaceArea: 2900, pressureDropPa: 25_000 },
+  'plate-fin': { uaPerFaceArea: 2500, pressureDropPa: 25_000 },
+  'tube-fin': { uaPerFaceArea: 1500, pressureDropPa: 35_000 },
+}
+
+export const GENERIC_SIZES = {
+  small: { faceAreaM2: 0.026, words: 'small, about 10 × 4 in' },
+  medium: { faceAreaM2: 0.046, words: 'medium, about 11 × 6½ in' },
+  large: { faceAreaM2: 0.076, words: 'large, about 11 × 10½ in' },
+} as const
+export type GenericSize = keyof typeof GENERIC_SIZES
+
+export const CONSTRUCTION_WORDS: Record<AirConstruction | 'in-tank', string> = {
+  'stacked-plate': 'stacked plate',
+  'plate-fin': 'plate and fin',
+  'tube-fin': 'tube and fin',
+  'in-tank': 'in the radiator tank',
+}
+
+export const POSITION_WORDS: Record<AirPosition | 'radiator-tank', string> = {
+  'ahead-of-condenser': 'ahead of the condenser',
+  'behind-condenser': 'between condenser and radiator',
+  remote: 'remote, under the body',
+  'radiator-tank': 'in the radiator tank',
+}
+
+/** A fan made for a remote core pulls air through it at about this speed [m/s]; common practice, no source. */
+const REMOTE_FAN_FACE_MPS = 3
+
+/**
+ * Heat that a conductance carries at the reference point.
+ *
+ * Equation: Q = ε(NTU, Cr) Cmin ΔT, cross-flow with both streams unmixed.
+ *
+ * @param uaWK - conductance at the reference point [W/K]
+ * @param faceAreaM2 - face the air flows through [m²]
+ * @returns heat [W]
+ */
+export function heatAtReferencePoint(uaWK: number, faceAreaM2: number): number {
+  const { oilFlowM3S, oilInC, airVelocityMps, inletDifferenceK } = REFERENCE_POINT
+  const [kv40MmSqS, kv100MmSqS, density15KgM3] = FLUIDS['atf-standard']
+  const oil = makeOil({ kv40MmSqS, kv100MmSqS, density15KgM3 })
+  const oilCapacity = oilFlowM3S * oilDensity(oil, oilInC) * oilHeatCapacity(oilInC)
+  const airCapacity = airVelocityMps * faceAreaM2 * RATING_AIR_DENSITY_KG_M3 * AIR_HEAT_CAPACITY_J_KG_K
+  const smaller = Math.min(oilCapacity, airCapacity)
+  const ratio = smaller / Math.max(oilCapacity, airCapacity)
+  return effectivenessCrossFlow(uaWK / smaller, ratio) * smaller * inletDifferenceK
+}
+
+/** A model cooler of a construction, a size class and a place. */
+export function createGenericCooler(choice: {
+  construction: AirConstruction
+  position: AirPosition
+  size: GenericSize
+  fan?: boolean
+}): AirCooler {
+  const { faceAreaM2 } = GENERIC_SIZES[choice.size]
+  const { uaPerFaceArea, pressureDropPa } = GENERIC_COOLERS[choice.construction]
+  const heatW = heatAtReferencePoint(uaPerFaceArea * faceAreaM2, faceAreaM2)
+  return {
+    name: `${capitalize(choice.size)} ${CONSTRUCTION_WORDS[choice.construction]} cooler`,
+    construction: choice.construction,
+    position: choice.position,
+    faceAreaM2,
+    ...(choice.position === 'remote' && choice.fan === true
+      ? { fanFlowM3S: REMOTE_FAN_FACE_MPS * faceAreaM2 }
+      : {}),
+    rating: { ...REFERENCE_POINT, heatW: Math.round(heatW), pressureDropPa },
+  }
+}
+
+function capitalize(word: string): string {
+  return word.charAt(0).toUpperCase() + word.slice(1)
+}

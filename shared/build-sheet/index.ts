@@ -1,0 +1,13 @@
+/** The domain between the sheet and the model: build sheets, the eight facts, set-ups, limits, bands, catalogue parts. */
+export * from './archetypes'
+export * from './band'
+export * from './catalogue'
+export * from './demo-catalogue'
+export * from './facts'
+export * from './generic-cooler'
+export * from './limits'
+export * from './settled-start'
+export * from './setups'
+export * from './sheet'
+export * from './spreads'
+export * from './tire-code'
