@@ -1,6 +1,6 @@
-import { effectivenessCrossFlow } from '../heat'
-import { AIR_HEAT_CAPACITY_J_KG_K, RATING_AIR_DENSITY_KG_M3 } from '../heat/air'
-import { FLUIDS, makeOil, oilDensity, oilHeatCapacity } from '../heat/fluids'
+import { RATING_AIR_DENSITY_KG_M3 } from '../heat/air'
+import { airCapacityRate, exchangerHeat, oilCapacityRate } from '../heat/coolers'
+import { makeOil } from '../heat/fluids'
 import type { AirConstruction, AirCooler, AirPosition } from '../schemas/heat-input'
 
 /**
@@ -58,13 +58,12 @@ const REMOTE_FAN_FACE_MPS = 3
  */
 export function heatAtReferencePoint(uaWK: number, faceAreaM2: number): number {
   const { oilFlowM3S, oilInC, airVelocityMps, inletDifferenceK } = REFERENCE_POINT
-  const [kv40MmSqS, kv100MmSqS, density15KgM3] = FLUIDS['atf-standard']
-  const oil = makeOil({ kv40MmSqS, kv100MmSqS, density15KgM3 })
-  const oilCapacity = oilFlowM3S * oilDensity(oil, oilInC) * oilHeatCapacity(oilInC)
-  const airCapacity = airVelocityMps * faceAreaM2 * RATING_AIR_DENSITY_KG_M3 * AIR_HEAT_CAPACITY_J_KG_K
-  const smaller = Math.min(oilCapacity, airCapacity)
-  const ratio = smaller / Math.max(oilCapacity, airCapacity)
-  return effectivenessCrossFlow(uaWK / smaller, ratio) * smaller * inletDifferenceK
+  return exchangerHeat(
+    uaWK,
+    oilCapacityRate(makeOil({ class: 'atf-standard' }), oilInC, oilFlowM3S),
+    airCapacityRate(RATING_AIR_DENSITY_KG_M3, faceAreaM2, airVelocityMps),
+    inletDifferenceK,
+  )
 }
 
 /** A model cooler of a construction, a size class and a place. */
