@@ -28,14 +28,21 @@ export default defineNuxtConfig({
     },
   },
   tailwindcss: { exposeConfig: false, viewer: false, cssPath: '~/assets/css/tailwind.css' },
-  colorMode: { preference: 'system', fallback: 'light', classSuffix: '', storageKey: 'longpull-theme' },
+  colorMode: {
+    preference: 'system',
+    fallback: 'light',
+    classSuffix: '',
+    storage: 'cookie',
+    storageKey: 'longpull-theme',
+  },
   icon: {
     provider: 'server',
     fallbackToApi: false,
     serverBundle: { collections: ['lucide'] },
     clientBundle: { scan: true },
   },
-  auth: { hash: { scrypt: {} } },
+  // The page's own session store asks /api/auth/me once; the module's client state would be a second, weaker answer.
+  auth: { loadStrategy: 'none', hash: { scrypt: {} } },
   // The nonce policy is for pages; the API sets its few headers itself (server/middleware), which is several times faster.
   security: {
     nonce: true,

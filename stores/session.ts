@@ -11,6 +11,8 @@ export const useSessionStore = defineStore('session', () => {
   const me = ref<Me | null>(null)
   /** Whether the page asks for a sign-in because the session ended under it. */
   const asking = ref(false)
+  /** Whether the last attempt to find out who is signed in failed, so that nobody knows. */
+  const unreachable = ref(false)
   const colorMode = useColorMode()
   /** The units this device last showed; the server reads the cookie too, so that the first paint is in the right ones. */
   const unitsChoice = useCookie<UnitSystem | null>('longpull-units', {
@@ -24,12 +26,14 @@ export const useSessionStore = defineStore('session', () => {
 
   const waiting: ((signedIn: boolean) => void)[] = []
 
-  /** Finds out who is signed in; nobody is an answer too. Any other failure leaves it as it was. */
+  /** Finds out who is signed in; nobody is an answer too. */
   async function load(): Promise<void> {
     try {
       me.value = await api<Me>('/api/auth/me', { anonymous: true })
+      unreachable.value = false
     } catch (error) {
-      if (error instanceof ApiError && error.status === 401) me.value = null
+      me.value = null
+      unreachable.value = !(error instanceof ApiError && error.status === 401)
     }
   }
 
@@ -37,6 +41,7 @@ export const useSessionStore = defineStore('session', () => {
   async function signIn(credentials: SignIn): Promise<void> {
     const answer = await api<Me>('/api/auth/sign-in', { method: 'POST', body: credentials, anonymous: true })
     me.value = answer
+    unreachable.value = false
     unitsChoice.value = answer.user.unitSystem ?? answer.shop.unitSystem
     colorMode.preference = answer.user.theme
     settle(true)
@@ -74,5 +79,5 @@ export const useSessionStore = defineStore('session', () => {
     for (const resolve of waiting.splice(0)) resolve(signedIn)
   }
 
-  return { me, asking, unitsChoice, load, signIn, signOut, remember, askForSignIn, settle }
+  return { me, asking, unreachable, unitsChoice, load, signIn, signOut, remember, askForSignIn, settle }
 })

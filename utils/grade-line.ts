@@ -1,4 +1,5 @@
-import type { Judgement } from './tokens'
+import type { Judgement } from '#shared/schemas/limits'
+import { LADDER } from './ladder'
 
 /** A point of a road: how far along (0 to 1) and how high (0 to 1). */
 export interface RoadPoint {
@@ -86,3 +87,13 @@ export function roadPath(
     return `${step === 0 ? 'M' : 'L'}${x.toFixed(2)} ${y.toFixed(2)}`
   }).join(' ')
 }
+
+/** The ladder written along the road of the mark: the higher the pull, the hotter. */
+export const LADDER_MARKS: readonly RoadMark[] = (
+  [
+    [0.2, 'fine'],
+    [0.46, 'watch'],
+    [0.66, 'ease-off'],
+    [0.84, 'stop'],
+  ] as const
+).map(([along, judgement]) => ({ along, judgement, text: LADDER[judgement].word }))

@@ -68,13 +68,3 @@ export const COLOR_PAIRS: readonly { front: ColorName; back: ColorName; kind: 't
 
 /** The one scale of type, in pixels at the browser's default size. */
 export const TYPE_SCALE = { small: 13, base: 15, lead: 18, head: 24, answer: 36 } as const
-
-/** The words of the ladder, by what to do, with the weight of line that belongs to each (px). */
-export const LADDER = {
-  fine: { word: 'fine', weightPx: 1, color: 'heat-fine' },
-  watch: { word: 'watch', weightPx: 2, color: 'heat-watch' },
-  'ease-off': { word: 'ease off', weightPx: 3, color: 'heat-ease' },
-  stop: { word: 'stop', weightPx: 4, color: 'heat-stop' },
-} as const satisfies Record<string, { word: string; weightPx: number; color: ColorName }>
-
-export type Judgement = keyof typeof LADDER
