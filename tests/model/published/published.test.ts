@@ -2,8 +2,12 @@ import { describe, expect, it } from 'vitest'
 import { loadPublished, type TopicChecks } from '../../support/published'
 import { air } from './air.checks'
 import { converter } from './converter.checks'
+import { cooling } from './cooling.checks'
+import { fluidLife } from './fluid-life.checks'
 import { fluids } from './fluids.checks'
+import { heatExchangers } from './heat-exchangers.checks'
 import { interpolation } from './interpolation.checks'
+import { lines } from './lines.checks'
 import { roadLoad } from './road-load.checks'
 import { units } from './units.checks'
 
@@ -12,7 +16,18 @@ import { units } from './units.checks'
  * entry in neither table, in both, or a table row without an entry fails.
  */
 
-const TOPICS: TopicChecks[] = [air, converter, fluids, interpolation, roadLoad, units]
+const TOPICS: TopicChecks[] = [
+  air,
+  converter,
+  cooling,
+  fluidLife,
+  fluids,
+  heatExchangers,
+  interpolation,
+  lines,
+  roadLoad,
+  units,
+]
 const entries = loadPublished()
 const checks = new Map(TOPICS.flatMap((topic) => Object.entries(topic.checks)))
 const notApplicable = new Map(TOPICS.flatMap((topic) => Object.entries(topic.notApplicable)))
