@@ -1,5 +1,5 @@
 // @ts-check
-import { existsSync, mkdirSync, readdirSync, readFileSync, rmSync, writeFileSync } from 'node:fs'
+import { existsSync, lstatSync, mkdirSync, readdirSync, readFileSync, rmSync, writeFileSync } from 'node:fs'
 import { tmpdir } from 'node:os'
 import { join } from 'node:path'
 import { chooseClusterFolder } from './cluster-place.mjs'
@@ -26,6 +26,7 @@ function requireServerUser() {
  *   onStop: given the way to stop it, before it is started, so that it is stopped however the start ends
  */
 export async function startOwnDatabase({ root, progress, onStop }) {
+  requireOwnFiles(join(root, '.data'))
   const stateFile = join(root, '.data', 'cluster.json')
   const state = readState(stateFile)
   const known = [state.folder, join(root, '.data', 'postgres')].filter((folder) => folder !== undefined)
@@ -46,6 +47,24 @@ export async function startOwnDatabase({ root, progress, onStop }) {
     await cluster.ensureDatabase('longpull')
     return { cluster, secrets }
   })
+}
+
+/**
+ * What another user's start command made can't be used, unless by root.
+ *
+ * @param {string} data
+ */
+function requireOwnFiles(data) {
+  const self = process.getuid?.()
+  if (self === undefined || self === 0) return
+  for (const path of [data, join(data, 'secrets.json'), join(data, 'cluster.json'), join(data, 'postgres')]) {
+    const info = lstatSync(path, { throwIfNoEntry: false })
+    if (info !== undefined && info.uid !== self) {
+      throw new Advice(
+        `${path} belongs to another user (number ${info.uid}), whose start command made it. Start as that user or as root, or move the folder .data away to begin anew.`,
+      )
+    }
+  }
 }
 
 /**
