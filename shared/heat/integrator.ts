@@ -1,0 +1,217 @@
+import { COUPLED } from './balances'
+
+/**
+ * Integrates the four coupled temperatures: a linearly implicit method of order 3 with step control, which stays stable
+ * however fast a thermostat reacts, and leaves a cubic on every step for output.
+ *
+ * Source: method RODAS3 of A. Sandu, J. G. Verwer, J. G. Blom, E. J. Spee, G. R. Carmichael and F. A. Potra,
+ * "Benchmarking stiff ODE solvers for atmospheric chemistry problems II: Rosenbrock solvers", Atmospheric Environment 31
+ * (1997), 3459-3472; step control after E. Hairer and G. Wanner, Solving Ordinary Differential Equations II, IV.8.
+ */
+
+export type Rates = (temperatures: Float64Array, rates: Float64Array) => void
+
+/** One finished step: ends, rates at both ends, and its place in time. */
+export interface StepRecord {
+  timeS: number
+  lengthS: number
+  from: Float64Array
+  to: Float64Array
+  fromRates: Float64Array
+  toRates: Float64Array
+}
+
+/** Local error a step may have [K]. */
+export const STEP_TOLERANCE_K = 0.01
+const PERTURBATION_K = 1e-4
+const SHORTEST_STEP_S = 1e-6
+const FIRST_STEP_S = 5
+/** Past this many steps, and each time again, the tolerance is loosened tenfold: a wild thermostat must not hang the program. */
+const PATIENCE_STEPS = 20_000
+
+const n = COUPLED
+const jacobian = new Float64Array(n * n)
+const matrix = new Float64Array(n * n)
+const pivots = new Int32Array(n)
+const stage: Float64Array[] = [0, 1, 2, 3].map(() => new Float64Array(n))
+const probe = new Float64Array(n)
+const probeRates = new Float64Array(n)
+const right = new Float64Array(n)
+
+function fillJacobian(rates: Rates, at: Float64Array, atRates: Float64Array): void {
+  probe.set(at)
+  for (let column = 0; column < n; column++) {
+    const kept = probe[column]!
+    probe[column] = kept + PERTURBATION_K
+    rates(probe, probeRates)
+    probe[column] = kept
+    for (let row = 0; row < n; row++)
+      jacobian[row * n + column] = (probeRates[row]! - atRates[row]!) / PERTURBATION_K
+  }
+}
+
+/** LU factors of the matrix in place, with row exchange. */
+function factor(): void {
+  for (let k = 0; k < n; k++) {
+    let pivot = k
+    for (let row = k + 1; row < n; row++)
+      if (Math.abs(matrix[row * n + k]!) > Math.abs(matrix[pivot * n + k]!)) pivot = row
+    pivots[k] = pivot
+    if (pivot !== k)
+      for (let column = 0; column < n; column++) {
+        const kept = matrix[k * n + column]!
+        matrix[k * n + column] = matrix[pivot * n + column]!
+        matrix[pivot * n + column] = kept
+      }
+    const inverse = 1 / matrix[k * n + k]!
+    for (let row = k + 1; row < n; row++) {
+      const share = matrix[row * n + k]! * inverse
+      matrix[row * n + k] = share
+      for (let column = k + 1; column < n; column++)
+        matrix[row * n + column]! -= share * matrix[k * n + column]!
+    }
+  }
+}
+
+/** Solves with the factors; `b` becomes the answer. */
+function backSubstitute(b: Float64Array): void {
+  for (let k = 0; k < n; k++) {
+    const pivot = pivots[k]!
+    if (pivot !== k) {
+      const kept = b[k]!
+      b[k] = b[pivot]!
+      b[pivot] = kept
+    }
+    for (let row = k + 1; row < n; row++) b[row]! -= matrix[row * n + k]! * b[k]!
+  }
+  for (let k = n - 1; k >= 0; k--) {
+    let sum = b[k]!
+    for (let column = k + 1; column < n; column++) sum -= matrix[k * n + column]! * b[column]!
+    b[k] = sum / matrix[k * n + k]!
+  }
+}
+
+/** One trial step of RODAS3; leaves the new temperatures in `to` and returns the error estimate [K]. */
+function trialStep(
+  rates: Rates,
+  from: Float64Array,
+  fromRates: Float64Array,
+  h: number,
+  to: Float64Array,
+): number {
+  const diagonal = 2 / h
+  for (let index = 0; index < n * n; index++) matrix[index] = -jacobian[index]!
+  for (let k = 0; k < n; k++) matrix[k * n + k]! += diagonal
+  factor()
+  const [k1, k2, k3, k4] = stage as [Float64Array, Float64Array, Float64Array, Float64Array]
+  k1.set(fromRates)
+  backSubstitute(k1)
+  for (let i = 0; i < n; i++) k2[i] = fromRates[i]! + (4 / h) * k1[i]!
+  backSubstitute(k2)
+  for (let i = 0; i < n; i++) to[i] = from[i]! + 2 * k1[i]!
+  rates(to, right)
+  for (let i = 0; i < n; i++) k3[i] = right[i]! + (k1[i]! - k2[i]!) / h
+  backSubstitute(k3)
+  for (let i = 0; i < n; i++) to[i] = to[i]! + k3[i]!
+  rates(to, right)
+  for (let i = 0; i < n; i++) k4[i] = right[i]! + (k1[i]! - k2[i]! - (8 / 3) * k3[i]!) / h
+  backSubstitute(k4)
+  let error = 0
+  for (let i = 0; i < n; i++) {
+    to[i]! += k4[i]!
+    error = Math.max(error, Math.abs(k4[i]!))
+  }
+  return Number.isFinite(error) ? error : Infinity
+}
+
+/**
+ * Integrates from a start over a duration and hands every accepted step to a visitor.
+ * @param rates - temperature rates [K/s]; does not depend on time
+ * @param start - temperatures at the start [°C]; becomes those at the end
+ * @param durationS - [s]
+ * @param visit - sees each accepted step; the record is used again for the next
+ * @param tolerance - local error a step may have [K]
+ * @returns number of steps taken
+ */
+export function integrate(
+  rates: Rates,
+  start: Float64Array,
+  durationS: number,
+  visit: (step: StepRecord) => void,
+  tolerance = STEP_TOLERANCE_K,
+): number {
+  const record: StepRecord = {
+    timeS: 0,
+    lengthS: 0,
+    from: Float64Array.from(start),
+    to: new Float64Array(n),
+    fromRates: new Float64Array(n),
+    toRates: new Float64Array(n),
+  }
+  rates(record.from, record.fromRates)
+  let h = Math.min(FIRST_STEP_S, durationS)
+  let steps = 0
+  let rejected = false
+  fillJacobian(rates, record.from, record.fromRates)
+  while (record.timeS < durationS) {
+    const allowed = tolerance * 10 ** Math.floor(steps / PATIENCE_STEPS)
+    const left = durationS - record.timeS
+    if (h > 0.999999 * left) h = left
+    else if (h > 0.5 * left) h = 0.5 * left
+    const error = trialStep(rates, record.from, record.fromRates, h, record.to)
+    steps++
+    const growth = 0.9 * Math.cbrt(allowed / Math.max(error, 1e-12))
+    if (error > allowed && h > SHORTEST_STEP_S) {
+      h = Math.max(SHORTEST_STEP_S, h * Math.max(0.1, Math.min(0.7, growth)))
+      rejected = true
+      continue
+    }
+    rates(record.to, record.toRates)
+    record.lengthS = h
+    visit(record)
+    record.timeS = h === left ? durationS : record.timeS + h
+    const { from, fromRates } = record
+    record.from = record.to
+    record.fromRates = record.toRates
+    record.to = from
+    record.toRates = fromRates
+    h *= Math.min(rejected ? 1 : 6, Math.max(0.3, growth))
+    rejected = false
+    if (record.timeS < durationS) fillJacobian(rates, record.from, record.fromRates)
+  }
+  start.set(record.from)
+  return steps
+}
+
+/** Temperature on a step from its cubic; `share` runs from 0 to 1. */
+export function onStep(step: StepRecord, index: number, share: number): number {
+  const u = 1 - share
+  const h = step.lengthS
+  return (
+    u * u * ((1 + 2 * share) * step.from[index]! + share * h * step.fromRates[index]!) +
+    share * share * ((3 - 2 * share) * step.to[index]! - u * h * step.toRates[index]!)
+  )
+}
+
+/** Highest temperature on a step: an end, or the top of its cubic. */
+export function peakOnStep(step: StepRecord, index: number): number {
+  const top = Math.max(step.from[index]!, step.to[index]!)
+  const r0 = step.fromRates[index]! * step.lengthS
+  const r1 = step.toRates[index]! * step.lengthS
+  if (!(r0 > 0 && r1 < 0)) return top
+  const rise = step.to[index]! - step.from[index]!
+  const a = 3 * (r0 + r1 - 2 * rise)
+  const b = 2 * (3 * rise - 2 * r0 - r1)
+  const root = Math.sqrt(Math.max(0, b * b - 4 * a * r0))
+  const share = Math.abs(a) < 1e-12 * Math.abs(b) ? -r0 / b : (-b - root) / (2 * a)
+  return share > 0 && share < 1 ? Math.max(top, onStep(step, index, share)) : top
+}
+
+/** Time-integral of a temperature over a step [K s]. */
+export function integralOnStep(step: StepRecord, index: number): number {
+  const h = step.lengthS
+  return (
+    0.5 * h * (step.from[index]! + step.to[index]!) +
+    ((h * h) / 12) * (step.fromRates[index]! - step.toRates[index]!)
+  )
+}
