@@ -27,8 +27,8 @@ export interface AirSide {
   /** ρ A V cp through the radiator's face [W/K]. */
   stackCapacityRate: number
   /** Per cooler: face velocity [m/s] and air inlet temperature [°C]; meaningless in a tank. */
-  coolerVelocityMps: number[]
-  coolerAirC: number[]
+  coolerVelocityMps: Float64Array
+  coolerAirC: Float64Array
 }
 
 /** Ram air and fan together: cube root of the sum of cubes. */
@@ -74,40 +74,49 @@ function coolerFaceVelocity(cooler: CoolerUnit, stackVelocity: number, airSpeed:
   return Math.max(NATURAL_DRAUGHT_MPS, open * (1 - cooler.blockedFraction))
 }
 
+export function emptyAirSide(coolerCount: number): AirSide {
+  return {
+    faceVelocityMps: 0,
+    stackInC: 0,
+    behindCondenserC: 0,
+    stackCapacityRate: 0,
+    coolerVelocityMps: new Float64Array(coolerCount),
+    coolerAirC: new Float64Array(coolerCount),
+  }
+}
+
 /**
- * Air velocities and temperatures at one operating point.
+ * Air velocities and temperatures at one operating point, written into `air`.
+ * @param air - is written
  * @param site - ambient, density, under-body temperature
- * @param cooling - stack, fan, radiator, condenser
+ * @param cooling - stack, fan, radiator
  * @param coolers - units
  * @param condenserW - heat of the condenser, 0 without air conditioning [W]
  * @param airSpeed - max(0, v + w) [m/s]
  * @param engineSpeed - [rad/s]
- * @returns the air side
  */
-export function makeAirSide(
+export function updateAirSide(
+  air: AirSide,
   site: Site,
   cooling: Cooling,
   coolers: readonly CoolerUnit[],
   condenserW: number,
   airSpeed: number,
   engineSpeed: number,
-): AirSide {
-  const faceVelocityMps = stackFaceVelocity(cooling, coolers, airSpeed, engineSpeed)
-  const stackInC = site.ambientC + RECIRCULATION_K * Math.max(0, 1 - airSpeed / RECIRCULATION_SPEED_MPS)
-  const stackCapacityRate = airCapacityRate(site.airDensityKgM3, cooling.radiator.faceAreaM2, faceVelocityMps)
-  const behindCondenserC = stackInC + condenserW / stackCapacityRate
-  return {
-    faceVelocityMps,
-    stackInC,
-    behindCondenserC,
-    stackCapacityRate,
-    coolerVelocityMps: coolers.map((cooler) => coolerFaceVelocity(cooler, faceVelocityMps, airSpeed)),
-    coolerAirC: coolers.map((cooler) =>
+): void {
+  const velocity = stackFaceVelocity(cooling, coolers, airSpeed, engineSpeed)
+  air.faceVelocityMps = velocity
+  air.stackInC = site.ambientC + RECIRCULATION_K * Math.max(0, 1 - airSpeed / RECIRCULATION_SPEED_MPS)
+  air.stackCapacityRate = airCapacityRate(site.airDensityKgM3, cooling.radiator.faceAreaM2, velocity)
+  air.behindCondenserC = air.stackInC + condenserW / air.stackCapacityRate
+  for (let index = 0; index < coolers.length; index++) {
+    const cooler = coolers[index]!
+    air.coolerVelocityMps[index] = coolerFaceVelocity(cooler, velocity, airSpeed)
+    air.coolerAirC[index] =
       cooler.position === 'remote'
         ? site.underbodyC
         : cooler.position === 'behind-condenser'
-          ? behindCondenserC
-          : stackInC,
-    ),
+          ? air.behindCondenserC
+          : air.stackInC
   }
 }

@@ -1,6 +1,6 @@
 import { Circuit } from './circuit'
 import type { CoolingSystem } from './cooling-system'
-import type { LoopTable } from './loop-flow'
+import type { LoopSource } from './loop-flow'
 import { oilDensity, oilHeatCapacity } from './fluids'
 import type { OperatingPoint } from './operating-point'
 import type { Calibrated, ThermalMasses } from './resolve'
@@ -49,47 +49,47 @@ export function loneBodyAt(body: LoneBody, startC: number, elapsedS: number): nu
   return body.endC + (startC - body.endC) * Math.exp(-elapsedS / body.timeS)
 }
 
-/** One operating point with everything that turns temperatures into heat flows. */
+/** One operating point with everything that turns temperatures into heat flows; `set` moves it to another point. */
 export class ThermalPoint {
-  readonly point: OperatingPoint
   readonly circuit: Circuit
-  readonly axle: LoneBody
-  readonly transferCase: LoneBody
-  /** Heats after calibration [W]; drag at the reference viscosity. */
-  readonly converterW: number
-  readonly fixedW: number
-  readonly spinReferenceW: number
-  readonly engineToCoolantW: number
-
   readonly masses: ThermalMasses
   readonly heatScale: number
   readonly underbodyC: number
-  readonly panConductance: number
-  readonly caseConductance: number
+  axle: LoneBody = { endC: 0, timeS: 1 }
+  transferCase: LoneBody = { endC: 0, timeS: 1 }
+  /** Heats after calibration [W]; drag at the reference viscosity. */
+  converterW = 0
+  fixedW = 0
+  spinReferenceW = 0
+  engineToCoolantW = 0
+  panConductance = 0
+  caseConductance = 0
 
-  constructor(
-    point: OperatingPoint,
-    system: CoolingSystem,
-    masses: ThermalMasses,
-    calibration: Calibrated,
-    table?: LoopTable,
-  ) {
-    const airSpeed = Math.max(0, point.speedMps + point.headwindMps)
-    this.point = point
+  constructor(system: CoolingSystem, masses: ThermalMasses, calibration: Calibrated) {
     this.masses = masses
     this.heatScale = calibration.heatScale
     this.underbodyC = system.site.underbodyC
-    this.circuit = new Circuit(system, airSpeed, point.engineSpeed, point.feedShare, table)
-    this.converterW = calibration.heatScale * point.converterW
-    this.fixedW = calibration.heatScale * (point.gearW + point.shiftW + point.pumpW)
-    this.spinReferenceW = calibration.heatScale * point.spinW
+    this.circuit = new Circuit(system)
+  }
+
+  /** Moves to an operating point whose loop states come from `source`. */
+  set(point: OperatingPoint, source: LoopSource): void {
+    const { masses, heatScale } = this
+    const airSpeed = Math.max(0, point.speedMps + point.headwindMps)
+    this.circuit.configure(airSpeed, point.engineSpeed, source)
+    this.converterW = heatScale * point.converterW
+    this.fixedW = heatScale * (point.gearW + point.shiftW + point.pumpW)
+    this.spinReferenceW = heatScale * point.spinW
     this.engineToCoolantW = IDLE_COOLANT_HEAT_W + masses.coolantHeatRatio * point.enginePowerW
     const transferPerArea = surfaceHeatTransfer(CASE_WIND_SHARE * airSpeed)
     const caseTransfer = transferPerArea * masses.caseAreaM2
     this.panConductance = PAN_SHARE * caseTransfer
     this.caseConductance = (1 - PAN_SHARE) * caseTransfer
-    const axleTransfer = surfaceHeatTransfer(AXLE_WIND_SHARE * airSpeed)
-    this.axle = this.loneBody(point.axleW, axleTransfer * masses.axle.surfaceM2, masses.axle.heatCapacityJK)
+    this.axle = this.loneBody(
+      point.axleW,
+      surfaceHeatTransfer(AXLE_WIND_SHARE * airSpeed) * masses.axle.surfaceM2,
+      masses.axle.heatCapacityJK,
+    )
     this.transferCase = this.loneBody(
       point.transferCaseW,
       transferPerArea * masses.transferCase.surfaceM2,
@@ -167,8 +167,8 @@ export class ThermalPoint {
   }
 
   /** Heat sources after calibration, drag as at a state. */
-  heatSources(heatSpinW: number): HeatSources {
-    const { point, heatScale } = this
+  heatSources(point: OperatingPoint, heatSpinW: number): HeatSources {
+    const { heatScale } = this
     return {
       converterW: this.converterW,
       gearW: heatScale * point.gearW,

@@ -1,12 +1,12 @@
-import { AIR_HEAT_CAPACITY_J_KG_K, RATING_AIR_DENSITY_KG_M3 } from './air'
-import { makeAirSide } from './air-side'
+import { RATING_AIR_DENSITY_KG_M3 } from './air'
+import { emptyAirSide, updateAirSide } from './air-side'
 import type { AirSide } from './air-side'
 import type { CoolingSystem, Window } from './cooling-system'
-import { loopTable } from './cooling-system'
+import { airCapacityRate } from './coolers'
 import { crossFlowEffectiveness } from './effectiveness'
 import { COOLANT_HEAT_CAPACITY_J_M3_K } from './fluids'
 import { makeLoopState } from './loop-flow'
-import type { LoopState, LoopTable } from './loop-flow'
+import type { LoopSource, LoopState } from './loop-flow'
 
 /** Oil loop, coolers and radiator solved together at one instant. */
 
@@ -22,9 +22,11 @@ export function openShare(window: Window, tempC: number): number {
   return Math.min(1, Math.max(0, (tempC - window.openC) / (window.fullC - window.openC)))
 }
 
+const power = (base: number, exponent: number) => Math.exp(exponent * Math.log(base))
+
 /**
- * One operating point's cooling circuit. `evaluate` solves it for three temperatures and leaves the answer in the
- * fields. Conductances depend on the sump temperature and the bypass (oil side) and on the thermostat (coolant side)
+ * One operating point's cooling circuit. `configure` sets the point, `evaluate` solves it for three temperatures and
+ * leaves the answer in the fields. Conductances depend on the sump temperature and the bypass (oil side) and on the thermostat (coolant side)
  * only, and are kept from call to call while those do not change; what is left is linear in the temperatures.
  */
 export class Circuit {
@@ -41,12 +43,13 @@ export class Circuit {
   bypassShare = 1
 
   private readonly system: CoolingSystem
-  private readonly table: LoopTable
-  private readonly coolantFactor: number
+  private source: LoopSource | undefined
+  private coolantFactor = 0
   /** Air-side (or coolant-side, at full thermostat) resistance terms and capacity rates per cooler. */
   private readonly sinkTerm: Float64Array
   private readonly sinkRate: Float64Array
-  private readonly radiatorAirTerm: number
+  private radiatorAirTerm = 0
+  private radiatorCoolantTerm = 0
   private readonly isTank: Uint8Array
   private readonly inStack: Uint8Array
   private readonly hasTank: boolean
@@ -63,19 +66,11 @@ export class Circuit {
   private coolantPower = 0
   private radiatorConductance = 0
 
-  constructor(
-    system: CoolingSystem,
-    airSpeed: number,
-    engineSpeed: number,
-    feedShare: number,
-    table: LoopTable = loopTable(system, feedShare),
-  ) {
-    const { site, cooling, coolers, radiator } = system
+  constructor(system: CoolingSystem) {
+    const { coolers } = system
     const count = coolers.length
     this.system = system
-    this.table = table
-    this.air = makeAirSide(site, cooling, coolers, system.condenserW, airSpeed, engineSpeed)
-    this.coolantFactor = Math.min(LARGEST_COOLANT_FACTOR, engineSpeed / radiator.pumpSpeed)
+    this.air = emptyAirSide(count)
     this.loopState = makeLoopState(count)
     this.coolerHeatW = new Float64Array(count)
     this.conductance = new Float64Array(count)
@@ -85,22 +80,41 @@ export class Circuit {
     this.isTank = Uint8Array.from(coolers, (cooler) => (cooler.position === 'radiator-tank' ? 1 : 0))
     this.inStack = Uint8Array.from(coolers, (cooler) => (cooler.inStack ? 1 : 0))
     this.hasTank = this.isTank.includes(1)
+  }
+
+  /**
+   * Sets the operating point.
+   * @param airSpeed - max(0, v + w) [m/s]
+   * @param engineSpeed - [rad/s]
+   * @param source - loop states over sump temperature at the point's feed share
+   */
+  configure(airSpeed: number, engineSpeed: number, source: LoopSource): void {
+    const { site, cooling, coolers, radiator, condenserW } = this.system
+    const { air } = this
+    this.source = source
+    this.keptSumpC = this.usedSumpC = this.keptBypass = this.keptOpen = this.keptTankOpen = NaN
+    updateAirSide(air, site, cooling, coolers, condenserW, airSpeed, engineSpeed)
+    this.coolantFactor = Math.min(LARGEST_COOLANT_FACTOR, engineSpeed / radiator.pumpSpeed)
     const densityRatio = site.airDensityKgM3 / RATING_AIR_DENSITY_KG_M3
-    coolers.forEach((cooler, index) => {
+    for (let index = 0; index < coolers.length; index++) {
+      const cooler = coolers[index]!
       if (this.isTank[index] === 1) {
         const fullFlow = this.coolantFactor * radiator.ratedCoolantFlowM3S
         this.sinkTerm[index] =
-          cooler.airShare * (fullFlow / cooler.ratedCoolantFlowM3S) ** -cooler.law.airExponent
-        return
+          cooler.airShare * power(fullFlow / cooler.ratedCoolantFlowM3S, -cooler.law.airExponent)
+        continue
       }
-      const velocity = this.air.coolerVelocityMps[index]!
+      const velocity = air.coolerVelocityMps[index]!
       this.sinkTerm[index] =
-        cooler.airShare * ((velocity * densityRatio) / cooler.ratedAirVelocityMps) ** -cooler.law.airExponent
-      this.sinkRate[index] = site.airDensityKgM3 * cooler.faceAreaM2 * velocity * AIR_HEAT_CAPACITY_J_KG_K
-    })
+        cooler.airShare *
+        power((velocity * densityRatio) / cooler.ratedAirVelocityMps, -cooler.law.airExponent)
+      this.sinkRate[index] = airCapacityRate(site.airDensityKgM3, cooler.faceAreaM2, velocity)
+    }
     this.radiatorAirTerm =
       RADIATOR_AIR_SHARE *
-      ((this.air.faceVelocityMps * densityRatio) / radiator.ratedAirVelocityMps) ** -RADIATOR_AIR_EXPONENT
+      power((air.faceVelocityMps * densityRatio) / radiator.ratedAirVelocityMps, -RADIATOR_AIR_EXPONENT)
+    this.radiatorCoolantTerm =
+      (1 - RADIATOR_AIR_SHARE) * power(this.coolantFactor, -RADIATOR_COOLANT_EXPONENT)
   }
 
   /**
@@ -127,7 +141,7 @@ export class Circuit {
   /** Reads flow and oil properties at a sump temperature into `loopState`. */
   readLoop(sumpC: number): void {
     if (sumpC === this.keptSumpC) return
-    this.table.read(sumpC, this.loopState)
+    this.source?.read(sumpC, this.loopState)
     this.keptSumpC = sumpC
   }
 
@@ -141,9 +155,7 @@ export class Circuit {
       return
     }
     this.coolantPower = Math.exp(-RADIATOR_COOLANT_EXPONENT * Math.log(open))
-    const coolantTerm =
-      (1 - RADIATOR_AIR_SHARE) * this.coolantPower * this.coolantFactor ** -RADIATOR_COOLANT_EXPONENT
-    const ua = radiator.uaRatedWK / (this.radiatorAirTerm + coolantTerm)
+    const ua = radiator.uaRatedWK / (this.radiatorAirTerm + this.radiatorCoolantTerm * this.coolantPower)
     const smaller = Math.min(this.coolantRate, this.air.stackCapacityRate)
     const larger = Math.max(this.coolantRate, this.air.stackCapacityRate)
     this.radiatorConductance = crossFlowEffectiveness(ua / smaller, smaller / larger) * smaller

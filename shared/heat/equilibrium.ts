@@ -111,10 +111,15 @@ function settleByTime(thermal: ThermalPoint, from: ArrayLike<number>): [number, 
  * followed in time.
  * @param thermal - operating point with its circuit
  * @param from - temperatures it comes from [°C]
+ * @param guess - temperatures Newton starts at [°C], where some are known to lie near
  * @returns temperatures at rest [°C]
  */
-export function equilibriumOf(thermal: ThermalPoint, from: ArrayLike<number>): Float64Array {
-  let pair = newton(thermal, from[SUMP]!, from[COOLANT]!)
+export function equilibriumOf(
+  thermal: ThermalPoint,
+  from: ArrayLike<number>,
+  guess: ArrayLike<number> = from,
+): Float64Array {
+  let pair = newton(thermal, guess[SUMP]!, guess[COOLANT]!)
   if (pair === undefined || !isNextRest(thermal, from, pair[0], pair[1])) pair = settleByTime(thermal, from)
   slowRates(thermal, pair[0], pair[1])
   return Float64Array.from(temperatures)

@@ -8,7 +8,14 @@ import { integralOnStep, integrate, onStep, peakOnStep } from './integrator'
 import type { StepRecord } from './integrator'
 import type { OperatingPoint } from './operating-point'
 import type { ResolvedFluidLife } from './resolve'
-import { makeTruck, operatingPoints, segmentDuration, startTemperatures, thermalPoint } from './truck'
+import {
+  makeThermal,
+  makeTruck,
+  operatingPoints,
+  segmentDuration,
+  setPoint,
+  startTemperatures,
+} from './truck'
 import type { Truck } from './truck'
 import type { Estimate, EstimateOptions, SegmentResult, Series, State } from './types'
 import { MODEL_VERSION } from './version'
@@ -158,16 +165,15 @@ function checkLength(
 }
 
 function segmentResult(
-  segment: Segment,
+  point: OperatingPoint,
   thermal: ThermalPoint,
   durationS: number,
   tally: Tally,
   end: State,
   equilibrium: State | null,
 ): SegmentResult {
-  const { point } = thermal
   return {
-    kind: segment.kind,
+    kind: point.kind,
     speedMps: point.speedMps,
     speedHeld: point.speedHeld,
     gear: point.gear,
@@ -176,7 +182,7 @@ function segmentResult(
     speedRatio: point.speedRatio,
     durationS,
     distanceM: point.speedMps * durationS,
-    heat: thermal.heatSources(end.heatSpinW),
+    heat: thermal.heatSources(point, end.heatSpinW),
     peakSumpC: tally.peakSumpC,
     peakCoolerInletC: tally.peakCoolerInletC,
     end,
@@ -204,19 +210,17 @@ export function peaksOfDuty(
   points: readonly OperatingPoint[],
 ): { sumpC: number; coolerInletC: number } {
   const temperatures = startTemperatures(truck.resolved.start)
+  const thermal = makeThermal(truck)
+  const rates = (at: Float64Array, into: Float64Array) => thermal.rates(at, into)
   const peaks = { sumpC: -Infinity, coolerInletC: -Infinity }
   segments.forEach((segment, index) => {
-    const thermal = thermalPoint(truck, points[index]!)
-    const tally = freshTally()
-    tally.peakSumpC = temperatures[SUMP]!
-    tally.peakCoolerInletC = temperatures[CONVERTER]!
-    const rates = (at: Float64Array, into: Float64Array) => thermal.rates(at, into)
+    setPoint(thermal, truck, points[index]!)
+    peaks.sumpC = Math.max(peaks.sumpC, temperatures[SUMP]!)
+    peaks.coolerInletC = Math.max(peaks.coolerInletC, temperatures[CONVERTER]!)
     integrate(rates, temperatures, segmentDuration(segment, points[index]!), (step) => {
-      tally.peakSumpC = Math.max(tally.peakSumpC, peakOnStep(step, SUMP))
-      tally.peakCoolerInletC = Math.max(tally.peakCoolerInletC, peakOnStep(step, CONVERTER))
+      peaks.sumpC = Math.max(peaks.sumpC, peakOnStep(step, SUMP))
+      peaks.coolerInletC = Math.max(peaks.coolerInletC, peakOnStep(step, CONVERTER))
     })
-    peaks.sumpC = Math.max(peaks.sumpC, tally.peakSumpC)
-    peaks.coolerInletC = Math.max(peaks.coolerInletC, tally.peakCoolerInletC)
   })
   return peaks
 }
@@ -243,9 +247,10 @@ export function estimate(input: HeatInput, options: EstimateOptions = {}): Estim
   let distanceM = 0
   const total = freshTally()
   const writer = new SeriesWriter()
+  const thermal = makeThermal(truck)
   const results = segments.map((segment, index) => {
     const point = points[index]!
-    const thermal = thermalPoint(truck, point)
+    setPoint(thermal, truck, point)
     const durationS = segmentDuration(segment, point)
     const run: SegmentRun = {
       thermal,
@@ -272,7 +277,7 @@ export function estimate(input: HeatInput, options: EstimateOptions = {}): Estim
     writer.push(timeS, end.sumpC, end.coolerInletC, end.coolerReturnC, end.coolantC, axleC, transferCaseC)
     addTally(total, run.tally)
     const rest = segment.kind === 'stall' ? null : equilibriumState(thermal, temperatures)
-    return segmentResult(segment, thermal, durationS, run.tally, end, rest)
+    return segmentResult(point, thermal, durationS, run.tally, end, rest)
   })
   const answer = {
     modelVersion: MODEL_VERSION,

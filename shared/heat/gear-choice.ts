@@ -78,7 +78,7 @@ export function demandAtOutput(
 }
 
 /** The state of one gear from impeller and turbine speeds and torques. */
-function makeState(
+export function makeState(
   powertrain: Powertrain,
   demand: OutputDemand,
   gear: number,
@@ -109,7 +109,7 @@ function makeState(
 }
 
 /** Turbine torque that carries a demand in a gear, with the drag at the reference viscosity [N·m]. */
-function turbineTorqueNeeded(
+export function turbineTorqueNeeded(
   powertrain: Powertrain,
   demand: OutputDemand,
   gear: number,

@@ -160,6 +160,11 @@ export function makeLoopState(coolerCount: number): LoopState {
   }
 }
 
+/** Anything that knows the loop's state over sump temperature. */
+export interface LoopSource {
+  read(sumpC: number, state: LoopState): void
+}
+
 /** Solves the loop at one sump temperature without a table. */
 export function solveLoopState(
   loop: Loop,
@@ -195,7 +200,7 @@ const LAST_TABLE_C = FIRST_NODE_C + (NODES - 2) * NODE_STEP_K
  * Loop states over sump temperature at one feed share, solved at nodes 4 K apart as they are needed and interpolated
  * by cubics between; worst error about 1e-4 at the cold end. Outside -40 to 252 °C it solves directly.
  */
-export class LoopTable {
+export class LoopTable implements LoopSource {
   private readonly loop: Loop
   private readonly feedShare: number
   private readonly stride: number
@@ -261,5 +266,67 @@ export class LoopTable {
       }
     }
     state.oilCapacityRate = oilDensity(this.loop.oil, sumpC) * state.volumeFlow * oilHeatCapacity(sumpC)
+  }
+}
+
+/** Weights of a cubic through four even nodes at -1, 0, 1, 2. */
+function cubicWeights(t: number): [number, number, number, number] {
+  return [
+    (-t * (t - 1) * (t - 2)) / 6,
+    ((t + 1) * (t - 1) * (t - 2)) / 2,
+    (-(t + 1) * t * (t - 2)) / 2,
+    ((t + 1) * t * (t - 1)) / 6,
+  ]
+}
+
+/** Steps of feed share between the tables a log is replayed from. */
+const SHARE_STEPS = 32
+
+/**
+ * Loop states at any feed share, for a log in which every sample has its own: cubic between tables at shares 1/32 apart.
+ * `feedShare` is set before `read`.
+ */
+export class SharedLoopTables implements LoopSource {
+  feedShare = 1
+  private readonly loop: Loop
+  private readonly tables: (LoopTable | undefined)[] = []
+  private readonly parts: LoopState[]
+
+  constructor(loop: Loop) {
+    this.loop = loop
+    this.parts = [0, 1, 2, 3].map(() => makeLoopState(loop.coolers.length))
+  }
+
+  private table(step: number): LoopTable {
+    return (this.tables[step] ??= new LoopTable(this.loop, step / SHARE_STEPS))
+  }
+
+  read(sumpC: number, state: LoopState): void {
+    if (this.feedShare >= 1) {
+      this.table(SHARE_STEPS).read(sumpC, state)
+      return
+    }
+    const position = this.feedShare * SHARE_STEPS
+    if (position < 1) {
+      const viscosity = kinematicViscosity(this.loop.oil, sumpC)
+      solveLoopState(this.loop, sumpC, viscosity, this.feedShare, state)
+      return
+    }
+    const base = Math.min(SHARE_STEPS - 3, Math.max(1, Math.floor(position) - 1))
+    const weights = cubicWeights(position - base - 1)
+    const { parts } = this
+    for (let k = 0; k < 4; k++) this.table(base + k).read(sumpC, parts[k]!)
+    const blend = (pick: (part: LoopState) => number) =>
+      weights[0] * pick(parts[0]!) +
+      weights[1] * pick(parts[1]!) +
+      weights[2] * pick(parts[2]!) +
+      weights[3] * pick(parts[3]!)
+    state.volumeFlow = blend((part) => part.volumeFlow)
+    state.oilCapacityRate = blend((part) => part.oilCapacityRate)
+    state.spinFactor = parts[0]!.spinFactor
+    for (let index = 0; index < state.oilSide.length; index++) {
+      state.oilSide[index] = blend((part) => part.oilSide[index]!)
+      state.shares[index] = blend((part) => part.shares[index]!)
+    }
   }
 }

@@ -101,7 +101,7 @@ function isHeld(powertrain: Powertrain, road: RoadPoint, speedMps: number, accel
 }
 
 /** Largest argument that passes, between one that does and one that does not. */
-function bisect(passing: number, failing: number, passes: (value: number) => boolean): number {
+export function bisect(passing: number, failing: number, passes: (value: number) => boolean): number {
   let [good, bad] = [passing, failing]
   for (let step = 0; step < BISECTIONS; step++) {
     const middle = 0.5 * (good + bad)

@@ -1,0 +1,148 @@
+import type { SizingRequest, Targets } from '../schemas/estimate'
+import { AppError } from '../errors'
+import { CONVERTER, SUMP } from './balances'
+import { withCoolers } from './cooling-system'
+import { equilibriumOf } from './equilibrium'
+import { peaksOfDuty } from './estimate'
+import type { OperatingPoint } from './operating-point'
+import { LARGEST_CORE_M2, genericCooler, heatAtReferencePoint } from './reference-point'
+import { findRoot } from './roots'
+import { makeThermal, makeTruck, operatingPoints, setPoint, startTemperatures } from './truck'
+import type { Truck } from './truck'
+import type { Sizing, TargetName } from './types'
+
+/** The smallest cooler that holds the targets. */
+
+const TARGET_NAMES = ['sumpC', 'coolerInletC'] as const
+const SMALLEST_AREA_M2 = 1e-6
+const AREA_TOLERANCE_M2 = 1e-9
+/** Shares of the found area at which it is checked that nothing smaller holds. */
+const CHECK_SHARES = [0.25, 0.5, 0.8] as const
+/** Areas looked at, as shares of the largest core, where the largest itself does not hold. */
+const SCAN_POINTS = 24
+
+type Excess = Record<TargetName, number>
+
+/** Hottest temperatures that count, less their targets [K]; -Infinity without a target. */
+function excessOver(targets: Targets, hottest: Excess): Excess {
+  return {
+    sumpC: targets.sumpC === undefined ? -Infinity : hottest.sumpC - targets.sumpC,
+    coolerInletC:
+      targets.coolerInletC === undefined ? -Infinity : hottest.coolerInletC - targets.coolerInletC,
+  }
+}
+
+const worst = (excess: Excess) => Math.max(excess.sumpC, excess.coolerInletC)
+const decider = (excess: Excess): TargetName =>
+  excess.sumpC >= excess.coolerInletC ? TARGET_NAMES[0] : TARGET_NAMES[1]
+
+/** Tries coolers on one truck; operating points do not depend on the cooler and are solved once. */
+class CoolerTrial {
+  private readonly request: SizingRequest
+  private readonly truck: Truck
+  private readonly points: OperatingPoint[]
+  private readonly guesses: Float64Array[]
+
+  constructor(request: SizingRequest) {
+    this.request = request
+    this.truck = makeTruck(request.input)
+    this.points = operatingPoints(this.truck, request.input.duty.segments)
+    const start = startTemperatures(this.truck.resolved.start)
+    this.guesses = this.points.map(() => start)
+  }
+
+  get oil() {
+    return this.truck.resolved.masses.oil
+  }
+
+  /** Excess over each target with a cooler of an area added; 0 for none. */
+  excess(faceAreaM2: number): Excess {
+    const { resolved, system } = this.truck
+    const { construction, position, targets, basis, input } = this.request
+    const coolers =
+      faceAreaM2 === 0
+        ? system.coolers
+        : [...system.coolers, genericCooler(this.oil, construction, position, faceAreaM2)]
+    const truck = { resolved, system: withCoolers(resolved, system, coolers) }
+    return excessOver(
+      targets,
+      basis === 'peak' ? peaksOfDuty(truck, input.duty.segments, this.points) : this.hottestRest(truck),
+    )
+  }
+
+  /** Hottest equilibrium of the segments that are not a stall. */
+  private hottestRest(truck: Truck): Excess {
+    const start = startTemperatures(truck.resolved.start)
+    const hottest = { sumpC: -Infinity, coolerInletC: -Infinity }
+    const thermal = makeThermal(truck)
+    this.points.forEach((point, index) => {
+      if (point.kind === 'stall') return
+      setPoint(thermal, truck, point)
+      const rest = equilibriumOf(thermal, start, this.guesses[index])
+      this.guesses[index] = rest
+      hottest.sumpC = Math.max(hottest.sumpC, rest[SUMP]!)
+      hottest.coolerInletC = Math.max(hottest.coolerInletC, rest[CONVERTER]!)
+    })
+    return hottest
+  }
+}
+
+/** An area that holds: the largest core, or, as bigger is not always cooler, the best of a scan. */
+function findHoldingArea(excess: (area: number) => number): number | undefined {
+  if (excess(LARGEST_CORE_M2) <= 0) return LARGEST_CORE_M2
+  for (let k = 1; k < SCAN_POINTS; k++) {
+    const area = (LARGEST_CORE_M2 * k) / SCAN_POINTS
+    if (excess(area) <= 0) return area
+  }
+  return undefined
+}
+
+/** Smallest area that holds, below one that does. */
+function smallestArea(excess: (area: number) => number, holding: number): number {
+  let high = holding
+  for (;;) {
+    const atLow = excess(SMALLEST_AREA_M2)
+    if (atLow <= 0) return SMALLEST_AREA_M2
+    let area = findRoot(excess, SMALLEST_AREA_M2, high, atLow, excess(high), AREA_TOLERANCE_M2)
+    if (excess(area) > 0) area = Math.min(high, area + AREA_TOLERANCE_M2)
+    const smaller = CHECK_SHARES.map((share) => share * area).find((candidate) => excess(candidate) <= 0)
+    if (smaller === undefined) return area
+    high = smaller
+  }
+}
+
+/**
+ * Smallest face area of a generic cooler that holds the targets, added last in the loop, in series.
+ * @param request - input, construction, position, targets, basis
+ * @returns area, heat and UA at the reference point, and the target that decided; 0 when the targets hold already
+ * @throws AppError no_single_cooler when no core up to 0.12 m² does; the errors of `estimate`
+ */
+export function sizing(request: SizingRequest): Sizing {
+  const trial = new CoolerTrial(request)
+  if (worst(trial.excess(0)) <= 0) return { faceAreaM2: 0, heatW: 0, uaWK: 0 }
+  const excess = (area: number) => worst(trial.excess(area))
+  const holding = findHoldingArea(excess)
+  if (holding === undefined) throw noSingleCooler(request, trial)
+  const faceAreaM2 = smallestArea(excess, holding)
+  const uaWK = genericCooler(trial.oil, request.construction, request.position, faceAreaM2).uaRatedWK
+  return {
+    faceAreaM2,
+    heatW: heatAtReferencePoint(trial.oil, uaWK, faceAreaM2),
+    uaWK,
+    decidedBy: decider(trial.excess(faceAreaM2)),
+  }
+}
+
+function noSingleCooler(request: SizingRequest, trial: CoolerTrial): AppError {
+  const excess = trial.excess(LARGEST_CORE_M2)
+  const decidedBy = decider(excess)
+  return new AppError('no_single_cooler', {
+    issues: [
+      {
+        path: `targets.${decidedBy}`,
+        message: `the largest single core (${LARGEST_CORE_M2} m²) still misses ${request.targets[decidedBy]} °C by ${excess[decidedBy].toPrecision(3)} K; try two coolers, another place, lock-up or a lower speed`,
+      },
+    ],
+    facts: { decidedBy },
+  })
+}
