@@ -44,6 +44,8 @@ export default withNuxt(
       'stores/**',
       'utils/**',
       'plugins/**',
+      'middleware/**',
+      'workers/**',
     ],
     rules: forbid(noServer, knexOnlyInDb),
   },
