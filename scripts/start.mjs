@@ -15,7 +15,7 @@ import { Advice } from './lib/packages.mjs'
 import { rootFolder as root } from './lib/paths.mjs'
 import { portProblem } from './lib/ports.mjs'
 import { createProgress } from './lib/progress.mjs'
-import { CommandFailed, endRunning, Interrupted, lastLines, run } from './lib/run.mjs'
+import { CommandFailed, endRunning, Interrupted, lastLines, run, tellingLines } from './lib/run.mjs'
 import { claimStart } from './lib/single-start.mjs'
 
 const DEMO_PEOPLE = [
@@ -29,7 +29,11 @@ const DEMO_PEOPLE = [
 const dev = process.argv.includes('--dev')
 const progress = createProgress()
 
-/** What has been brought up and must be taken down again, the latest first. @type {{ name: string, close: () => Promise<unknown>, force: () => Promise<unknown> }[]} */
+/**
+ * What has been brought up and must be taken down again, the latest first.
+ *
+ * @type {{ name: string, close: () => Promise<unknown>, force: () => Promise<unknown> }[]}
+ */
 const opened = []
 let endingSince = 0
 
@@ -41,9 +45,11 @@ function continueUnlessEnding() {
 async function end(code) {
   endingSince ||= Date.now()
   await endRunning()
-  for (const { name, close } of opened.splice(0).reverse()) {
-    progress.say(`Ending ${name}`)
-    await close().catch((error) => progress.say(`  ${error.message}`))
+  for (let entry = opened.at(-1); entry !== undefined; entry = opened.at(-1)) {
+    progress.say(`Ending ${entry.name}`)
+    await entry.close().catch((error) => progress.say(`  ${error.message}`))
+    // Only now: an impatient second Ctrl-C must still find it.
+    opened.pop()
   }
   progress.say('Ended')
   process.exit(code)
@@ -226,7 +232,7 @@ try {
   if (!(error instanceof Interrupted) && endingSince === 0) {
     if (error instanceof Advice) progress.write(`\n${error.message}\n`)
     else if (error instanceof CommandFailed)
-      progress.write(`\n${error.message}:\n${lastLines(error.output, 40)}\n`)
+      progress.write(`\n${error.message}:\n${tellingLines(error.output)}\n`)
     else progress.write(`\n${error instanceof Error ? error.message : String(error)}\n`)
     await end(1)
   }

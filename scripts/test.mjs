@@ -12,7 +12,7 @@ import { startThrowawayCluster } from './lib/own-database.mjs'
 import { Advice, installDebianPackage } from './lib/packages.mjs'
 import { rootFolder as root } from './lib/paths.mjs'
 import { createProgress } from './lib/progress.mjs'
-import { CommandFailed, endRunning, Interrupted, lastLines, run } from './lib/run.mjs'
+import { CommandFailed, endRunning, Interrupted, run, tellingLines } from './lib/run.mjs'
 import { parseTestArguments } from './lib/test-arguments.mjs'
 
 const CLUSTER_STEPS = ['db', 'api', 'browser', 'deep']
@@ -50,7 +50,7 @@ async function prepare(dependents, work) {
     return true
   } catch (error) {
     if (error instanceof Interrupted) throw error
-    if (error instanceof CommandFailed) progress.write(`${error.message}:\n${lastLines(error.output, 60)}`)
+    if (error instanceof CommandFailed) progress.write(`${error.message}:\n${tellingLines(error.output, 60)}`)
     else progress.write(error instanceof Error ? error.message : String(error))
     progress.say(`Not run for want of it: ${dependents.join(', ')}`)
     tallies.push(...dependents.map(() => ({ passed: 0, failed: 1, skipped: 0 })))

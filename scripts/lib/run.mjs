@@ -154,3 +154,15 @@ export function lastLines(output, count = 25) {
     .slice(-count)
     .join('\n')
 }
+
+/**
+ * The part of a failed program's output that tells why: from its first complaint on, else its end.
+ *
+ * @param {string} output
+ * @param {number} [count]
+ */
+export function tellingLines(output, count = 40) {
+  const lines = output.split(/\r?\n/).filter((line) => cleanLine(line) !== '')
+  const first = lines.findIndex((line) => /(^|\W)(error|fatal)(\W|$)|ERR!/i.test(line))
+  return (first === -1 ? lines.slice(-count) : lines.slice(first, first + count)).join('\n')
+}

@@ -99,7 +99,11 @@ export const ROOMS: Record<string, Room> = {
     rooms: ['server/utils/', 'server/services/', 'server/db/connection', SHARED],
     packages: SERVER,
   },
-  scripts: { holds: /^scripts\//, rooms: ['server/db/', 'server/repositories/', SHARED] },
+  scripts: {
+    holds: /^scripts\//,
+    // The demo seed stores passwords as signing in expects them.
+    rooms: ['server/db/', 'server/repositories/', 'server/services/passwords', SHARED],
+  },
   tests: { holds: /^tests\//, rooms: [''] },
   settings: {
     holds: /^[^/]+\.(ts|mjs)$/,
