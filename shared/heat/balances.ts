@@ -1,4 +1,5 @@
 import { Circuit } from './circuit'
+import { loopTable } from './cooling-system'
 import type { CoolingSystem } from './cooling-system'
 import type { LoopSource } from './loop-flow'
 import { oilDensity, oilHeatCapacity } from './fluids'
@@ -65,15 +66,24 @@ export class ThermalPoint {
   panConductance = 0
   caseConductance = 0
 
-  constructor(system: CoolingSystem, masses: ThermalMasses, calibration: Calibrated) {
+  private readonly system: CoolingSystem
+
+  constructor(
+    point: OperatingPoint | undefined,
+    system: CoolingSystem,
+    masses: ThermalMasses,
+    calibration: Calibrated,
+  ) {
+    this.system = system
     this.masses = masses
     this.heatScale = calibration.heatScale
     this.underbodyC = system.site.underbodyC
     this.circuit = new Circuit(system)
+    if (point !== undefined) this.set(point)
   }
 
-  /** Moves to an operating point whose loop states come from `source`. */
-  set(point: OperatingPoint, source: LoopSource): void {
+  /** Moves to an operating point; its loop states come from `source`, by default the table of its feed share. */
+  set(point: OperatingPoint, source: LoopSource = loopTable(this.system, point.feedShare)): void {
     const { masses, heatScale } = this
     const airSpeed = Math.max(0, point.speedMps + point.headwindMps)
     this.circuit.configure(airSpeed, point.engineSpeed, source)

@@ -8,14 +8,7 @@ import { integralOnStep, integrate, onStep, peakOnStep } from './integrator'
 import type { StepRecord } from './integrator'
 import type { OperatingPoint } from './operating-point'
 import type { ResolvedFluidLife } from './resolve'
-import {
-  makeThermal,
-  makeTruck,
-  operatingPoints,
-  segmentDuration,
-  setPoint,
-  startTemperatures,
-} from './truck'
+import { makeThermal, makeTruck, operatingPoints, segmentDuration, startTemperatures } from './truck'
 import type { Truck } from './truck'
 import type { Estimate, EstimateOptions, SegmentResult, Series, State } from './types'
 import { MODEL_VERSION } from './version'
@@ -214,7 +207,7 @@ export function peaksOfDuty(
   const rates = (at: Float64Array, into: Float64Array) => thermal.rates(at, into)
   const peaks = { sumpC: -Infinity, coolerInletC: -Infinity }
   segments.forEach((segment, index) => {
-    setPoint(thermal, truck, points[index]!)
+    thermal.set(points[index]!)
     peaks.sumpC = Math.max(peaks.sumpC, temperatures[SUMP]!)
     peaks.coolerInletC = Math.max(peaks.coolerInletC, temperatures[CONVERTER]!)
     integrate(rates, temperatures, segmentDuration(segment, points[index]!), (step) => {
@@ -250,7 +243,7 @@ export function estimate(input: HeatInput, options: EstimateOptions = {}): Estim
   const thermal = makeThermal(truck)
   const results = segments.map((segment, index) => {
     const point = points[index]!
-    setPoint(thermal, truck, point)
+    thermal.set(point)
     const durationS = segmentDuration(segment, point)
     const run: SegmentRun = {
       thermal,

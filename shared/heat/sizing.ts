@@ -7,7 +7,7 @@ import { peaksOfDuty } from './estimate'
 import type { OperatingPoint } from './operating-point'
 import { LARGEST_CORE_M2, genericCooler, heatAtReferencePoint } from './reference-point'
 import { findRoot } from './roots'
-import { makeThermal, makeTruck, operatingPoints, setPoint, startTemperatures } from './truck'
+import { makeThermal, makeTruck, operatingPoints, startTemperatures } from './truck'
 import type { Truck } from './truck'
 import type { Sizing, TargetName } from './types'
 
@@ -77,7 +77,7 @@ class CoolerTrial {
     const thermal = makeThermal(truck)
     this.points.forEach((point, index) => {
       if (point.kind === 'stall') return
-      setPoint(thermal, truck, point)
+      thermal.set(point)
       const rest = equilibriumOf(thermal, start, this.guesses[index])
       this.guesses[index] = rest
       hottest.sumpC = Math.max(hottest.sumpC, rest[SUMP]!)

@@ -7,7 +7,7 @@ import { integrate } from './integrator'
 import { operatingPoint } from './operating-point'
 import type { OperatingPoint } from './operating-point'
 import { resolveStart } from './resolve'
-import { makeThermal, makeTruck, setPoint, startTemperatures } from './truck'
+import { makeThermal, makeTruck, startTemperatures } from './truck'
 import type { Truck } from './truck'
 import type { Sweep, SweepAnswerPoint, SweepPoint } from './types'
 
@@ -48,7 +48,7 @@ export class GradeRunner {
   /** Temperatures and heat of an operating point, at equilibrium or at the top of the climb. */
   answer(grade: number, point: OperatingPoint): SweepAnswerPoint {
     const { thermal } = this
-    setPoint(thermal, this.truck, point)
+    thermal.set(point)
     let temperatures: Float64Array
     if (this.climb === undefined) {
       temperatures = equilibriumOf(thermal, this.start, this.guess)

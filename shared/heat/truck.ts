@@ -1,6 +1,6 @@
 import type { HeatInput, Segment } from '../schemas/heat-input'
 import { CASE, CONVERTER, COOLANT, COUPLED, SUMP, ThermalPoint } from './balances'
-import { loopTable, makeCoolingSystem } from './cooling-system'
+import { makeCoolingSystem } from './cooling-system'
 import type { CoolingSystem } from './cooling-system'
 import { operatingPoint } from './operating-point'
 import type { OperatingPoint } from './operating-point'
@@ -27,12 +27,7 @@ export function operatingPoints(truck: Truck, segments: readonly Segment[]): Ope
 
 /** A thermal point of a truck, not yet set to an operating point. */
 export function makeThermal(truck: Truck): ThermalPoint {
-  return new ThermalPoint(truck.system, truck.resolved.masses, truck.resolved.calibration)
-}
-
-/** Sets a thermal point of a truck to an operating point. */
-export function setPoint(thermal: ThermalPoint, truck: Truck, point: OperatingPoint): void {
-  thermal.set(point, loopTable(truck.system, point.feedShare))
+  return new ThermalPoint(undefined, truck.system, truck.resolved.masses, truck.resolved.calibration)
 }
 
 /** The coupled temperatures at a start: converter and case at the sump's. */

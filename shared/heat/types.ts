@@ -102,7 +102,7 @@ export type WarningCode =
   | 'over_cooled'
   | 'cooler_flow_low'
   | 'coolant_heats_oil'
-  | 'viscosity_extrapolated'
+  | 'temperature_beyond_data'
   | 'engine_power_exceeds_torque'
 
 export interface Estimate {
@@ -228,4 +228,5 @@ export interface RestatedPart {
   limitedByOilFlow: boolean
   /** Computed over stated heat, less 1, one entry per rating. */
   misfits: { misfit: number; marked: boolean }[]
+  warnings: Warning[]
 }

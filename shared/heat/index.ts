@@ -1,0 +1,10 @@
+/** Public face of the heat model. */
+export { estimate } from './estimate'
+export { findGradeHeld } from './grade-held'
+export { restateAtReferencePoint } from './reference-rating'
+export { replay } from './replay'
+export { sizing } from './sizing'
+export { sweep } from './sweep'
+export { MODEL_VERSION } from './version'
+export { WARNING_MEANINGS, listWarningCodes } from './warnings'
+export type * from './types'
