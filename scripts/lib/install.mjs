@@ -1,5 +1,5 @@
 // @ts-check
-import { existsSync, readFileSync } from 'node:fs'
+import { existsSync, readdirSync, readFileSync } from 'node:fs'
 import { join } from 'node:path'
 import { run } from './run.mjs'
 
@@ -50,8 +50,33 @@ export function matchesLock(wantedText, installedText) {
  */
 export async function ensurePackages({ root, progress }) {
   if (isInstallCurrent(root)) return
-  await progress.step('Installing the packages (npm ci; the first time takes a minute or two)', (onLine) =>
-    run({ ...npm(['ci', '--include=dev', '--no-audit', '--no-fund']), cwd: root, onLine, leashed: true }),
+  await progress.step(
+    'Installing the packages (npm ci; the first time takes a minute or two)',
+    async (report) => {
+      // npm itself says nothing until it is through.
+      const count = setInterval(() => report(`${countPackages(root)} packages are there`), 2000)
+      try {
+        await run({
+          ...npm(['ci', '--include=dev', '--no-audit', '--no-fund']),
+          cwd: root,
+          onLine: report,
+          leashed: true,
+        })
+      } finally {
+        clearInterval(count)
+      }
+    },
+  )
+}
+
+/** @param {string} root */
+function countPackages(root) {
+  const folder = join(root, 'node_modules')
+  /** @param {string} path */
+  const names = (path) => (existsSync(path) ? readdirSync(path).filter((name) => !name.startsWith('.')) : [])
+  return names(folder).reduce(
+    (sum, name) => sum + (name.startsWith('@') ? names(join(folder, name)).length : 1),
+    0,
   )
 }
 
