@@ -33,7 +33,9 @@ export interface Band {
   open: SpreadName[]
 }
 
-function measurePeaks(input: HeatInput): { peakSumpC: number; peakCoolerInletC: number } {
+type Peaks = Record<'peakSumpC' | 'peakCoolerInletC', number>
+
+function measurePeaks(input: HeatInput): Peaks {
   const { peakSumpC, peakCoolerInletC } = estimate(input)
   return { peakSumpC, peakCoolerInletC }
 }
@@ -41,19 +43,19 @@ function measurePeaks(input: HeatInput): { peakSumpC: number; peakCoolerInletC: 
 type Measure<K extends string> = (input: HeatInput) => Record<K, number>
 
 /** The change of every number for one doubt moved up; where the model refuses that, moved down and mirrored. */
-function findEffects<K extends string>(
+function findEffects(
   input: HeatInput,
-  base: Record<K, number>,
+  base: Record<string, number>,
   spread: SpreadName,
   relative: number,
-  measure: Measure<K>,
-): Partial<Record<K, number>> | undefined {
+  measure: Measure<string>,
+): Record<string, number> | undefined {
   for (const side of [1, -1]) {
     try {
       const moved = measure(SPREADS[spread].apply(input, spreadFactor(relative, side)))
-      const effects: Partial<Record<K, number>> = {}
-      for (const key in base) effects[key] = side * (moved[key] - base[key])
-      return effects
+      return Object.fromEntries(
+        Object.entries(base).map(([key, value]) => [key, side * ((moved[key] ?? value) - value)]),
+      )
     } catch (error) {
       if (!(error instanceof AppError)) throw error
     }
@@ -74,29 +76,21 @@ function findEffects<K extends string>(
  *
  * Source: first-order propagation of independent uncertainties, JCGM 100:2008 (GUM), 5.1.2.
  */
-export function simpleBand(request: {
+export function simpleBand<K extends string = keyof Peaks>(request: {
   input: HeatInput
   spreads?: RelativeSpreads
-}): Record<'peakSumpC' | 'peakCoolerInletC', Band>
-export function simpleBand<K extends string>(request: {
-  input: HeatInput
-  spreads?: RelativeSpreads
-  measure: Measure<K>
-}): Record<K, Band>
-export function simpleBand(request: {
-  input: HeatInput
-  spreads?: RelativeSpreads
-  measure?: Measure<string>
-}): Record<string, Band> {
+  measure?: Measure<K>
+}): Record<K, Band> {
   const spreads = request.spreads ?? listSpreads()
-  const measure = request.measure ?? measurePeaks
+  // Without a measure K is its default, the two peaks.
+  const measure: Measure<string> = request.measure ?? measurePeaks
   const base = measure(request.input)
   const moved = SPREAD_NAMES.map((name) => ({
     name,
     effects: spreads[name] === 0 ? {} : findEffects(request.input, base, name, spreads[name], measure),
   }))
   const open = moved.filter(({ effects }) => effects === undefined).map(({ name }) => name)
-  return Object.fromEntries(
+  const bands = Object.fromEntries(
     Object.entries(base).map(([key, value]) => {
       const effects = moved.map(({ name, effects }) => ({ name, effect: effects?.[key] ?? 0 }))
       const variance = effects.reduce((sum, { effect }) => sum + effect ** 2, 0)
@@ -112,4 +106,5 @@ export function simpleBand(request: {
       return [key, { value, low: value - halfWidth, high: value + halfWidth, parts, open }]
     }),
   )
+  return bands as Record<K, Band>
 }

@@ -1,10 +1,10 @@
 import { AppError } from '../errors'
 import { estimate, restateAtReferencePoint } from '../heat'
+import { REFERENCE_POINT } from '../heat/reference-point'
 import type { RestatedPart } from '../heat/types'
 import type { Targets } from '../schemas/estimate'
 import type { CatalogueAirCooler, CatalogueCooler, CatalogueTankCooler } from '../schemas/catalogue-cooler'
 import type { AirCooler, AirPosition, Cooler, HeatInput, TankCooler } from '../schemas/heat-input'
-import { REFERENCE_POINT } from './generic-cooler'
 
 /** From a catalogue part to the model's cooler, and which parts hold a target when they are added to a truck. */
 

@@ -1,27 +1,10 @@
-import { RATING_AIR_DENSITY_KG_M3 } from '../heat/air'
-import { airCapacityRate, exchangerHeat, oilCapacityRate } from '../heat/coolers'
-import { makeOil } from '../heat/fluids'
+import { GENERIC_COOLERS, heatAtReferencePoint, referenceOil, REFERENCE_POINT } from '../heat/reference-point'
 import type { AirConstruction, AirCooler, AirPosition } from '../schemas/heat-input'
 
 /**
  * A cooler known by its construction and about how large it is, for a caller who cannot say more. Rated at the common
  * reference point with the generic conductance per face area of its construction (judgement).
  */
-
-/** The common reference point: 100 °F between oil and air, 2 gal/min at 93.3 °C, air at 4 m/s. */
-export const REFERENCE_POINT = {
-  inletDifferenceK: 55.56,
-  oilFlowM3S: 1.26e-4,
-  oilInC: 93.3,
-  airVelocityMps: 4,
-} as const
-
-/** Conductance per face area at the reference point [W/(m² K)] and pressure drop there [Pa]; judgement. */
-export const GENERIC_COOLERS: Record<AirConstruction, { uaPerFaceArea: number; pressureDropPa: number }> = {
-  'stacked-plate': { uaPerFaceArea: 2900, pressureDropPa: 25_000 },
-  'plate-fin': { uaPerFaceArea: 2500, pressureDropPa: 25_000 },
-  'tube-fin': { uaPerFaceArea: 1500, pressureDropPa: 35_000 },
-}
 
 export const GENERIC_SIZES = {
   small: { faceAreaM2: 0.026, words: 'small, about 10 × 4 in' },
@@ -47,25 +30,6 @@ export const POSITION_WORDS: Record<AirPosition | 'radiator-tank', string> = {
 /** A fan made for a remote core pulls air through it at about this speed [m/s]; common practice, no source. */
 const REMOTE_FAN_FACE_MPS = 3
 
-/**
- * Heat that a conductance carries at the reference point.
- *
- * Equation: Q = ε(NTU, Cr) Cmin ΔT, cross-flow with both streams unmixed.
- *
- * @param uaWK - conductance at the reference point [W/K]
- * @param faceAreaM2 - face the air flows through [m²]
- * @returns heat [W]
- */
-export function heatAtReferencePoint(uaWK: number, faceAreaM2: number): number {
-  const { oilFlowM3S, oilInC, airVelocityMps, inletDifferenceK } = REFERENCE_POINT
-  return exchangerHeat(
-    uaWK,
-    oilCapacityRate(makeOil({ class: 'atf-standard' }), oilInC, oilFlowM3S),
-    airCapacityRate(RATING_AIR_DENSITY_KG_M3, faceAreaM2, airVelocityMps),
-    inletDifferenceK,
-  )
-}
-
 /** A model cooler of a construction, a size class and a place. */
 export function createGenericCooler(choice: {
   construction: AirConstruction
@@ -74,8 +38,8 @@ export function createGenericCooler(choice: {
   fan?: boolean
 }): AirCooler {
   const { faceAreaM2 } = GENERIC_SIZES[choice.size]
-  const { uaPerFaceArea, pressureDropPa } = GENERIC_COOLERS[choice.construction]
-  const heatW = heatAtReferencePoint(uaPerFaceArea * faceAreaM2, faceAreaM2)
+  const { uaPerAreaWM2K, pressureDropPa } = GENERIC_COOLERS[choice.construction]
+  const heatW = heatAtReferencePoint(referenceOil(), uaPerAreaWM2K * faceAreaM2, faceAreaM2)
   return {
     name: `${capitalize(choice.size)} ${CONSTRUCTION_WORDS[choice.construction]} cooler`,
     construction: choice.construction,

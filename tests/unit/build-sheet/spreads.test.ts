@@ -88,7 +88,10 @@ describe('the eleven doubts', () => {
       expect.closeTo(0.2 * by, 9),
       expect.closeTo(0.03 * by, 9),
     ])
-    expect(SPREADS.stallSpeed.apply(input, by).build.converter.stallRpm).toBeCloseTo(1900 * by, 9)
+    expect(SPREADS.stallSpeed.apply(input, by).build.converter.stallRpm).toBeCloseTo(
+      input.build.converter.stallRpm * by,
+      9,
+    )
     const losses = SPREADS.gearLosses.apply(input, by).build.transmission.gears
     losses.forEach((gear, index) =>
       expect(1 - gear.efficiency).toBeCloseTo(
