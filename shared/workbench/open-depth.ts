@@ -1,0 +1,29 @@
+import type { BuildAnswer } from '../schemas/build'
+import { computeAnswer } from './answer'
+import { computeDepth, type Depth } from './depth'
+import { computeGradeEvidence } from './grade-evidence'
+import { MOST_OTHERS } from './request'
+
+/**
+ * The deeper look of a saved build as its page first shows it: the first set-up, the others beside it. Null where there is
+ * no such scenario, or the model has no answer for it; the page then says so. The parts of the catalogue are left to the
+ * browser: they stand far down, and would be half of what the page has to carry.
+ */
+export function openDepth(answer: BuildAnswer, scenarioId: string): Partial<Depth> | null {
+  const { build, setups, scenarios } = answer
+  const scenario = scenarios.find(({ id }) => id === scenarioId)
+  const [setup, ...others] = setups
+  if (!scenario || !setup) return null
+  const request = {
+    sheet: build.sheet,
+    control: build.control,
+    limits: build.limits,
+    scenario: { load: scenario.load, duty: scenario.duty },
+    setup,
+    others: others.slice(0, MOST_OTHERS),
+    coolers: null,
+  }
+  const first = computeAnswer(request)
+  if (first.kind === 'refusal') return null
+  return computeDepth(request, first, computeGradeEvidence(request, first))
+}
