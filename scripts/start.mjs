@@ -70,6 +70,14 @@ for (const signal of /** @type {const} */ (['SIGINT', 'SIGTERM', 'SIGHUP'])) {
   })
 }
 
+// An npm that was killed outright passes nothing on: the parent is then another one.
+if (['start', 'dev'].includes(process.env.npm_lifecycle_event ?? '')) {
+  const parent = process.ppid
+  setInterval(() => {
+    if (process.ppid !== parent && endingSince === 0) void end(0)
+  }, 500).unref()
+}
+
 async function start() {
   const settings = readSettings(process.env)
   progress.say(`Longpull starts in ${root}`)
