@@ -49,8 +49,16 @@ interface Input<
   body: Parsed<B>
 }
 
+/** What a field is told where its schema has no words of its own. */
+const explainIssue: z.core.$ZodErrorMap = (issue) => {
+  if (issue.code !== 'invalid_type') return undefined
+  const wanted =
+    issue.expected === 'object' ? 'an object' : issue.expected === 'array' ? 'a list' : `a ${issue.expected}`
+  return issue.input === undefined ? `is missing; it takes ${wanted}` : `must be ${wanted}`
+}
+
 function parse(schema: z.ZodType, value: unknown): unknown {
-  const parsed = schema.safeParse(value)
+  const parsed = schema.safeParse(value, { error: explainIssue })
   if (parsed.success) return parsed.data
   const issues = listIssues(parsed.error).slice(0, MOST_ISSUES)
   throw new AppError('bad_input', {
