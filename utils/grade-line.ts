@@ -14,18 +14,24 @@ export interface RoadMark {
   judgement?: Judgement
 }
 
-/** The road of the mark: a valley, the long pull, a summit, and the first of the way down. */
-export const MARK_ROAD: readonly RoadPoint[] = [
-  { along: 0, height: 0.08 },
-  { along: 0.1, height: 0.02 },
-  { along: 0.2, height: 0.06 },
-  { along: 0.34, height: 0.25 },
-  { along: 0.46, height: 0.38 },
-  { along: 0.6, height: 0.63 },
-  { along: 0.74, height: 0.84 },
-  { along: 0.85, height: 0.98 },
-  { along: 0.91, height: 1 },
-  { along: 1, height: 0.86 },
+/** The road of the program: a valley floor, a first pitch, a bench with a dip, the long pull, the summit, the way down. */
+export const LONG_PULL: readonly RoadPoint[] = [
+  { along: 0, height: 0.07 },
+  { along: 0.07, height: 0.05 },
+  { along: 0.13, height: 0 },
+  { along: 0.19, height: 0.06 },
+  { along: 0.27, height: 0.21 },
+  { along: 0.33, height: 0.3 },
+  { along: 0.39, height: 0.32 },
+  { along: 0.43, height: 0.3 },
+  { along: 0.48, height: 0.36 },
+  { along: 0.58, height: 0.56 },
+  { along: 0.68, height: 0.73 },
+  { along: 0.77, height: 0.86 },
+  { along: 0.84, height: 0.97 },
+  { along: 0.885, height: 1 },
+  { along: 0.93, height: 0.94 },
+  { along: 1, height: 0.78 },
 ]
 
 /** Tangents after Fritsch and Carlson: a smooth road that never rises above a summit that was given. */
@@ -88,12 +94,12 @@ export function roadPath(
   }).join(' ')
 }
 
-/** The ladder written along the road of the mark: the higher the pull, the hotter. */
+/** The ladder written along the long pull: the higher the pull, the hotter. */
 export const LADDER_MARKS: readonly RoadMark[] = (
   [
-    [0.2, 'fine'],
-    [0.46, 'watch'],
+    [0.24, 'fine'],
+    [0.5, 'watch'],
     [0.66, 'ease-off'],
-    [0.84, 'stop'],
+    [0.82, 'stop'],
   ] as const
 ).map(([along, judgement]) => ({ along, judgement, text: LADDER[judgement].word }))
