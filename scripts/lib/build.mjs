@@ -7,7 +7,7 @@ import { processMark, stillRuns } from './processes.mjs'
 import { run } from './run.mjs'
 
 /** What the built application is made of. */
-const SOURCES = [
+export const SOURCES = [
   'app.vue',
   'assets',
   'components',
