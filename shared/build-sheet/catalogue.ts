@@ -8,10 +8,22 @@ import type { AirCooler, AirPosition, Cooler, HeatInput, TankCooler } from '../s
 
 /** From a catalogue part to the model's cooler, and which parts hold a target when they are added to a truck. */
 
-/** A part's ratings brought to the common reference point; only coolers in air have one. */
+/** Fitting several ratings costs more than driving the truck, and a part is ranked at every change of a truck. */
+const restatedParts = new WeakMap<CatalogueAirCooler, RestatedPart>()
+
+/**
+ * A part's ratings brought to the common reference point; only coolers in air have one. A part is not changed in place:
+ * the same object gives the same answer.
+ *
+ * @throws rating_impossible naming the rating that cannot be
+ */
 export function restatePart(part: CatalogueAirCooler): RestatedPart {
+  const known = restatedParts.get(part)
+  if (known !== undefined) return known
   const { construction, faceAreaM2, ratings } = part
-  return restateAtReferencePoint({ construction, faceAreaM2, ratings })
+  const restated = restateAtReferencePoint({ construction, faceAreaM2, ratings })
+  restatedParts.set(part, restated)
+  return restated
 }
 
 /**

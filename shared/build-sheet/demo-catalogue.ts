@@ -206,7 +206,7 @@ export const DEMO_CATALOGUE: readonly CatalogueCooler[] = [
     priceCents: 28900,
     ratings: [
       {
-        heatW: 8210,
+        heatW: 8460,
         inletDifferenceK: 55.56,
         oilFlowM3S: 0.0001262,
         airVelocityMps: 4,
@@ -214,18 +214,18 @@ export const DEMO_CATALOGUE: readonly CatalogueCooler[] = [
         oilInC: 93.3,
       },
       {
-        heatW: 11740,
+        heatW: 9530,
         inletDifferenceK: 55.56,
-        oilFlowM3S: 0.0001893,
-        airVelocityMps: 6,
-        pressureDropPa: 35000,
+        oilFlowM3S: 0.0001262,
+        airVelocityMps: 8,
+        pressureDropPa: 19000,
         oilInC: 93.3,
       },
       {
-        heatW: 14310,
+        heatW: 11290,
         inletDifferenceK: 55.56,
         oilFlowM3S: 0.0002524,
-        airVelocityMps: 8,
+        airVelocityMps: 4,
         pressureDropPa: 54000,
         oilInC: 93.3,
       },

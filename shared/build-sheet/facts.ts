@@ -288,7 +288,7 @@ export function createSheetFromFacts(
           path: 'vehicle.tyreRadiusM',
           value: parseTireCode(facts.tireCode).rollingRadiusM,
           typed: facts.tireCode.trim(),
-          unit: 'tire code',
+          unit: 'tire size',
           origin: 'maker',
         })
   const coolers = listCoolers(facts, archetype, options.catalogue ?? [])

@@ -6,7 +6,7 @@ import { CoolerSchema } from './heat-input'
 export const SetupChangeSchema = z.strictObject({
   shiftStyle: z.enum(['tow', 'economy'], { error: 'must be tow or economy' }).optional(),
   topGear: z.int({ error: 'must be a gear from 1 to 12' }).min(1).max(12).optional(),
-  /** Driven at this speed wherever the drive cycle is faster. */
+  /** Not faster than this on climbs and loose ground; everywhere, where the drive cycle has neither. */
   speedMps: z
     .number({ error: 'must be a speed from 0.1 to 100 m/s; 20 m/s is 45 mph' })
     .min(0.1, { error: 'must be a speed from 0.1 to 100 m/s; 20 m/s is 45 mph' })
