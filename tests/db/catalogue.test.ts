@@ -114,11 +114,11 @@ describe('S2: the database keeps shops apart by itself', () => {
   it('lets the serving role read neither passwords nor sessions, and write neither shops nor people', async () => {
     const rights = await queryAsAdmin<{ name: string; right: string }>(
       database,
-      `select c.relname as name, p.right from pg_class c
-       cross join unnest(array['select', 'insert', 'update', 'delete']) as p(right)
+      `select c.relname as name, p.verb as "right" from pg_class c
+       cross join unnest(array['select', 'insert', 'update', 'delete']) as p(verb)
        where c.relnamespace = 'public'::regnamespace and c.relkind = 'r'
          and c.relname in ('users', 'sessions', 'sign_in_attempts', 'shops', 'memberships', 'knex_migrations', 'knex_migrations_lock')
-         and has_table_privilege('longpull_app', c.oid, p.right) order by 1, 2`,
+         and has_table_privilege('longpull_app', c.oid, p.verb) order by 1, 2`,
     )
     expect(rights).toEqual([
       { name: 'knex_migrations', right: 'select' },
@@ -234,13 +234,7 @@ describe('S2: as the serving role', () => {
       await client.query('begin')
       await client.query('select * from app.begin_session($1)', [shops.a.tokenHash])
       for (const { name, column } of await listShopTables()) {
-        const { rows } = await client.query<{ column: string; type: string }>(
-          `select column_name as column, udt_name as type from information_schema.columns
-           where table_schema = 'public' and table_name = $1 and is_generated = 'NEVER' and is_nullable = 'NO'`,
-          [name],
-        )
         const columns = await listRequiredColumns(name)
-        expect(rows.length, `${name}: the serving role sees what it may write`).toBeGreaterThanOrEqual(0)
         await client.query('savepoint before')
         const names = columns.map(({ column: one }) => one)
         const values = columns.map(({ column: one, type }) =>
