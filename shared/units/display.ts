@@ -210,6 +210,24 @@ export const QUANTITIES = {
     ),
     digits: 'three',
   },
+  /** m³/s: air. */
+  airFlow: {
+    us: unit(
+      'ft³/min',
+      'cubic feet per minute',
+      ['ft3/min', 'cfm'],
+      (cubicMetersPerSecond) => (cubicMetersPerSecond / convert.feetToMeters(1) ** 3) * 60,
+      (cubicFeetPerMinute) => (cubicFeetPerMinute * convert.feetToMeters(1) ** 3) / 60,
+    ),
+    metric: unit(
+      'm³/h',
+      'cubic meters per hour',
+      ['m3/h'],
+      (cubicMetersPerSecond) => cubicMetersPerSecond * 3600,
+      (cubicMetersPerHour) => cubicMetersPerHour / 3600,
+    ),
+    digits: 'three',
+  },
   /** Pa. */
   pressure: {
     us: unit('psi', 'pounds per square inch', ['psig'], convert.pascalsToPsi, convert.psiToPascals),
@@ -326,7 +344,8 @@ const roundSignificant = (value: number, digits: number): number =>
  * 1,000 up are rounded to three significant digits too: nobody knows the heat of a truck to the fourth.
  */
 function printThree(value: number): string {
-  const rounded = roundSignificant(value, 3)
+  // Nothing of a truck is that small: it is what a difference leaves of 0, and no number of zeros prints it.
+  const rounded = Math.abs(value) < 1e-12 ? 0 : roundSignificant(value, 3)
   const magnitude = rounded === 0 ? 0 : Math.floor(Math.log10(Math.abs(rounded)))
   const decimals = rounded === 0 ? 0 : Math.max(0, 2 - magnitude)
   return rounded.toLocaleString('en-US', { minimumFractionDigits: decimals, maximumFractionDigits: decimals })

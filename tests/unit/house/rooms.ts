@@ -66,6 +66,13 @@ export const ROOMS: Record<string, Room> = {
     packages: NOTHING,
   },
   'shared/build-sheet': { holds: /^shared\/build-sheet\//, rooms: [SHARED], packages: /^zod$/ },
+  // Units and sums as people type them; loaded at the first keystroke.
+  'shared/quantities': {
+    holds: /^shared\/quantities\//,
+    rooms: ['shared/units/'],
+    packages: /^(mathjs|convert-units)$/,
+  },
+  'shared/cooling-loop': { holds: /^shared\/cooling-loop\//, rooms: [SHARED], packages: /^zod$/ },
   'shared/workbench': { holds: /^shared\/workbench\//, rooms: [SHARED], packages: /^zod$/ },
   'shared/charts': { holds: /^shared\/charts\//, rooms: [SHARED], packages: /^d3-(scale|shape)$/ },
   'server/api': {
