@@ -13,6 +13,7 @@ import { toModelCooler } from './catalogue'
 import { DEMO_CATALOGUE } from './demo-catalogue'
 import { type DemoDutyKey, getDemoDuty } from './demo-duties'
 import { createSheetFromFacts, type EightFacts, type ScenarioDraft, TRAILER_SHAPES } from './facts'
+import { createGenericCooler } from './generic-cooler'
 import { createStandingSetups, type SetupDraft } from './setups'
 import { deriveBuild, setSheetValue } from './sheet'
 
@@ -182,9 +183,7 @@ const SHOP_ONE: DemoTruck[] = [
       altitudeM: Math.round(feetToMeters(5600)),
       coolers: {
         inTank: false,
-        extras: [
-          { kind: 'generic', construction: 'plate-fin', position: 'remote', size: 'large', fan: true },
-        ],
+        extras: [{ kind: 'generic', construction: 'tube-fin', position: 'remote', size: 'medium' }],
       },
     },
     known: [
@@ -199,6 +198,15 @@ const SHOP_ONE: DemoTruck[] = [
       { key: 'hot-town', load: {} },
     ],
     considered: () => [
+      {
+        name: 'Large plate-fin core with a fan',
+        kind: 'custom',
+        change: {
+          coolers: [
+            createGenericCooler({ construction: 'plate-fin', position: 'remote', size: 'large', fan: true }),
+          ],
+        },
+      },
       { name: 'Lock-up switch wired and proven', kind: 'custom', change: { lockup: 'always' } },
     ],
   },
@@ -306,18 +314,11 @@ const SHOP_TWO: DemoTruck[] = [
       hill: { grade: 0.06, lengthM: Math.round(milesToMeters(3)), speedMps: mph(50) },
       ambientC: 43,
       altitudeM: Math.round(feetToMeters(1200)),
-      coolers: {
-        inTank: true,
-        extras: [
-          {
-            kind: 'generic',
-            construction: 'tube-fin',
-            position: 'ahead-of-condenser',
-            size: 'small',
-          },
-        ],
-      },
+      coolers: { inTank: true, extras: [] },
     },
+    known: [
+      { path: 'cooling.stack.blockedFraction', value: 0.25, typed: '25', unit: '%', origin: 'measured' },
+    ],
     control: { lockupCommand: 'pressure' },
     duties: [{ key: 'hot-town', load: {}, first: true }],
   },
@@ -334,7 +335,7 @@ const SHOP_TWO: DemoTruck[] = [
       tireCode: 'LT275/70R18',
       axleRatio: 3.73,
       lockupProven: 'unknown',
-      hill: { grade: 0.05, lengthM: Math.round(milesToMeters(4)), speedMps: mph(55) },
+      hill: { grade: 0.07, lengthM: Math.round(milesToMeters(6)), speedMps: mph(45) },
       ambientC: 36,
       altitudeM: Math.round(feetToMeters(1500)),
       coolers: { inTank: true, extras: [{ kind: 'stock' }] },

@@ -63,7 +63,9 @@ export const ExtraCoolerSchema = z.discriminatedUnion(
     }),
     z.strictObject({
       kind: z.literal('catalogue'),
-      coolerId: z.string({ error: 'choose a cooler of the catalogue' }).min(1),
+      coolerId: z
+        .string({ error: 'choose a cooler of the catalogue' })
+        .min(1, { error: 'choose a cooler of the catalogue' }),
       position: AirPositionSchema,
     }),
   ],
@@ -88,7 +90,10 @@ export const EightFactsSchema = z
     ),
     trailerShape: oneOf(['none', 'flat', 'boat', 'box']),
     weightSource: oneOf(['scale-ticket', 'placard', 'guess']),
-    tireCode: z.string({ error: 'must be a size code such as LT265/70R17' }).max(40).optional(),
+    tireCode: z
+      .string({ error: 'must be a size code such as LT265/70R17' })
+      .max(40, { error: 'must be at most 40 characters; LT265/70R17 would do' })
+      .optional(),
     tyreRadiusM: boundedNumber(0.25, 0.75, 'm rolling radius', 'a 33 in tire is about 0.41').optional(),
     axleRatio: boundedNumber(2, 10, '', 'a 4.10 axle is 4.1; it is on the axle tag or the door label'),
     lockupProven: KnownSchema,

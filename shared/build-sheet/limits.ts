@@ -20,9 +20,6 @@ export const JUDGEMENT_WORDS: Record<Judgement, string> = {
   stop: 'stop',
 }
 
-/** Below about 150 °F lock-up may be withheld. Common practice, no source. */
-export const TOO_COLD_C = fromFahrenheit(150)
-
 /** Where a place has no ladder of its own, `watch` begins this far under its sustained limit: the step of the pan's ladder. */
 const WATCH_BELOW_SUSTAINED_K = differenceFToK(differenceF(20))
 

@@ -25,11 +25,13 @@ export const ROLLING_CIRCUMFERENCE_PER_DIAMETER = { radial: 3.05, diagonal: 2.99
 const METRES_PER_INCH = 0.0254
 const MIN_DIAMETER_IN = 20
 const MAX_DIAMETER_IN = 60
+/** Longest text looked at: a size with everything printed after it. */
+const LONGEST_CODE = 40
 const WOULD_DO = 'LT265/70R17, 33x12.50R15 or 33 in would do'
 
 /** Load index, speed letter, load range, ply rating and the like after the size: read over, never needed here. */
 const SERVICE_DESCRIPTION =
-  '(?:\\s*(?:LT|C|XL|RF|M\\+S|TL|TT|\\/?\\s?[B-J]|LR\\s?[A-N]|LOAD RANGE [A-N]|\\d{1,2}\\s?PR|\\d{2,3}(?:\\/\\d{2,3})?\\s?[A-Z]))*'
+  '(?:\\s?(?:LT|XL|M\\+S|TL|TT|\\/?[B-J]|LR\\s?[A-N]|LOAD RANGE [A-N]|\\d{1,2}\\s?PR|\\d{2,3}(?:\\/\\d{2,3})?\\s?[A-Z]))*'
 const METRIC = new RegExp(
   `^(?:P|LT|ST|T)?\\s?(\\d{3})\\s?[/ ]\\s?(\\d{2,3})\\s?(ZR|R|D|B|-|/| )\\s?F?\\s?(\\d{2}(?:\\.5)?)${SERVICE_DESCRIPTION}$`,
 )
@@ -90,6 +92,7 @@ function tire(parts: Omit<Tire, 'rollingRadiusM'>): Tire {
 export function parseTireCode(text: string): Tire {
   const code = normalize(text)
   if (code === '') throw refusal(`is empty; ${WOULD_DO}`)
+  if (code.length > LONGEST_CODE) throw refusal(`is too long for a tire size; ${WOULD_DO}`)
 
   const metric = METRIC.exec(code)
   if (metric !== null) {

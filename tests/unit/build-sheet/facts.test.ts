@@ -1,3 +1,4 @@
+import fc from 'fast-check'
 import { describe, expect, it } from 'vitest'
 import { ARCHETYPE_IDS, findArchetype } from '../../../shared/build-sheet/archetypes'
 import { DEMO_CATALOGUE } from '../../../shared/build-sheet/demo-catalogue'
@@ -225,4 +226,77 @@ describe('the drive cycle of the facts', () => {
     )
     expect(impossible.scenario.duty.start).toBeDefined()
   })
+})
+
+describe('any facts the form lets through', () => {
+  const extra = fc.oneof(
+    fc.record({
+      kind: fc.constant('generic' as const),
+      construction: fc.constantFrom('stacked-plate' as const, 'plate-fin' as const, 'tube-fin' as const),
+      position: fc.constantFrom(
+        'ahead-of-condenser' as const,
+        'behind-condenser' as const,
+        'remote' as const,
+      ),
+      size: fc.constantFrom('small' as const, 'medium' as const, 'large' as const),
+    }),
+    fc.record({
+      kind: fc.constant('catalogue' as const),
+      coolerId: fc.constantFrom(
+        ...DEMO_CATALOGUE.filter(({ construction }) => construction !== 'in-tank').map(({ id }) => id),
+      ),
+      position: fc.constantFrom(
+        'ahead-of-condenser' as const,
+        'behind-condenser' as const,
+        'remote' as const,
+      ),
+    }),
+  )
+  const number = (min: number, max: number) => fc.double({ min, max, noNaN: true })
+  const anyFacts: fc.Arbitrary<EightFacts> = fc
+    .record({
+      archetype: fc.constantFrom(...ARCHETYPE_IDS),
+      truckMassKg: number(600, 30_000),
+      trailer: fc.option(
+        fc.record({
+          massKg: number(1, 40_000),
+          shape: fc.constantFrom('flat' as const, 'boat' as const, 'box' as const),
+        }),
+      ),
+      weightSource: fc.constantFrom('scale-ticket' as const, 'placard' as const, 'guess' as const),
+      tyreRadiusM: number(0.25, 0.75),
+      axleRatio: number(2, 10),
+      lockupProven: fc.constantFrom('yes' as const, 'no' as const, 'unknown' as const),
+      hill: fc.record({ grade: number(0, 0.5), lengthM: number(50, 100_000), speedMps: number(0.5, 45) }),
+      ambientC: number(-40, 60),
+      altitudeM: number(-430, 5800),
+      coolers: fc.record({ inTank: fc.boolean(), extras: fc.array(extra, { maxLength: 4 }) }),
+    })
+    .map(({ trailer, ...rest }) => ({
+      ...rest,
+      trailerMassKg: trailer?.massKg ?? 0,
+      trailerShape: trailer?.shape ?? 'none',
+    }))
+
+  it('make a build the model takes: an answer, or a refusal it gives a name to', () => {
+    fc.assert(
+      fc.property(anyFacts, (candidate) => {
+        expect(EightFactsSchema.safeParse(candidate).error?.issues).toBeUndefined()
+        const draft = createSheetFromFacts(candidate, { catalogue: DEMO_CATALOGUE })
+        const { judged } = deriveInputs({
+          sheet: draft.sheet,
+          scenario: draft.scenario,
+          control: draft.control,
+        })
+        expect(HeatInputSchema.safeParse(judged).error?.issues).toBeUndefined()
+        try {
+          const answer = estimate(judged)
+          expect(Number.isFinite(answer.peakSumpC)).toBe(true)
+        } catch (error) {
+          expect(error).toBeInstanceOf(AppError)
+        }
+      }),
+      { numRuns: 150 },
+    )
+  }, 30_000)
 })

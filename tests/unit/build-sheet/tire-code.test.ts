@@ -1,3 +1,4 @@
+import fc from 'fast-check'
 import { describe, expect, it } from 'vitest'
 import { AppError } from '../../../shared/errors'
 import { parseTireCode, readTireCode } from '../../../shared/build-sheet/tire-code'
@@ -17,6 +18,9 @@ describe('tire size codes', () => {
     ['LT265/70R17 121/118S', 'metric', 802.8],
     ['LT265/70R17/E', 'metric', 802.8],
     ['LT265/70R17 121/118Q LRE', 'metric', 802.8],
+    ['LT265/70R17 10PR', 'metric', 802.8],
+    ['LT265/70R17 LOAD RANGE E', 'metric', 802.8],
+    ['265/70R17C 121/118 S', 'metric', 802.8],
     ['235/80ZR17', 'metric', 17 * 25.4 + 2 * 235 * 0.8],
     ['225/70R19.5', 'metric', 19.5 * 25.4 + 2 * 225 * 0.7],
     ['33x12.50R15', 'flotation', 33 * 25.4],
@@ -75,6 +79,7 @@ describe('tire size codes', () => {
     ['16 in', '16.0 in tall'],
     ['333 in', '333.0 in tall'],
     ['22x9.50R22', 'rim (22 in)'],
+    ['265/70R17'.padEnd(80, '/E'), 'too long'],
   ])('refuses “%s” and says why', (text, reason) => {
     const read = readTireCode(text)
     expect(read).toHaveProperty('problem')
@@ -93,5 +98,47 @@ describe('tire size codes', () => {
         },
       ])
     }
+  })
+
+  it.each(['C', ' E', '10PR', ' 121/118S', 'LT', '/E'])('is not held up by many a “%s”', (piece) => {
+    const started = performance.now()
+    readTireCode(`265/70R17${piece.repeat(40).slice(0, 30)}!`)
+    expect(performance.now() - started).toBeLessThan(100)
+  })
+
+  it('answers any text: a tire of a size that exists, or what is wrong', () => {
+    const piece = fc.constantFrom(
+      'LT',
+      'P',
+      '265',
+      '33',
+      '12.50',
+      '/',
+      'x',
+      'R',
+      '-',
+      '17',
+      '"',
+      ' ',
+      'in',
+      '70',
+      '.',
+      ',',
+    )
+    const text = fc.oneof(
+      fc.string({ maxLength: 60 }),
+      fc.array(piece, { maxLength: 14 }).map((all) => all.join('')),
+    )
+    fc.assert(
+      fc.property(text, (typed) => {
+        const read = readTireCode(typed)
+        if ('problem' in read) expect(read.problem.length).toBeGreaterThan(5)
+        else {
+          expect(read.tire.rollingRadiusM).toBeGreaterThan(0.24)
+          expect(read.tire.rollingRadiusM).toBeLessThan(0.75)
+        }
+      }),
+      { numRuns: 2000 },
+    )
   })
 })
