@@ -99,7 +99,7 @@ describe('the model against a second implementation of the same equations', () =
           relative('totalS', answer.totalS, expected.totalS, 1e-4),
         ])
       }),
-      { numRuns: RUNS, seed: SEED },
+      { numRuns: RUNS, seed: SEED, endOnFailure: true },
     )
   }, 600_000)
 
@@ -119,7 +119,7 @@ describe('the model against a second implementation of the same equations', () =
         const settled = estimate(input).segments[0]!.equilibrium!
         expectClose(TEMPERATURES.map((key, at) => temperature(key, settled[key], fromCold[at]!)))
       }),
-      { numRuns: 2 * RUNS, seed: SEED },
+      { numRuns: 2 * RUNS, seed: SEED, endOnFailure: true },
     )
   }, 600_000)
 
@@ -157,7 +157,7 @@ describe('the model against a second implementation of the same equations', () =
           ]),
         )
       }),
-      { numRuns: RUNS, seed: SEED },
+      { numRuns: RUNS, seed: SEED, endOnFailure: true },
     )
   }, 600_000)
 })
