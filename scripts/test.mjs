@@ -19,7 +19,8 @@ const CLUSTER_STEPS = ['db', 'api', 'browser', 'deep']
 const BUILD_STEPS = ['api', 'browser', 'deep']
 const BROWSER_STEPS = ['browser', 'deep']
 
-const progress = createProgress()
+// The tests print for themselves: a sign of life between their files is enough.
+const progress = createProgress({ heartbeatMs: 30_000 })
 /** @type {import('./lib/checks.mjs').Tally[]} */
 const tallies = []
 /** @type {(() => Promise<void>) | undefined} */

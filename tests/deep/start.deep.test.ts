@@ -21,6 +21,7 @@ import {
   beside,
   clusterFolder,
   copyCheckout,
+  killAll,
   postmasterOf,
   processesOf,
   runStart,
@@ -55,7 +56,7 @@ describe('npm start', () => {
   afterEach(async () => {
     for (const { child } of commands.splice(0)) child.kill('SIGKILL')
     for (const place of [base, ...places.splice(0)]) {
-      for (const { pid } of processesOf(place)) process.kill(pid, 'SIGKILL')
+      killAll(place)
       await untilNobody(place)
       rmSync(place, { recursive: true, force: true })
     }
@@ -143,7 +144,7 @@ describe('npm start', () => {
     const builds = await countBuilds()
     const cluster = clusterFolder(folder)
     first.child.kill('SIGKILL')
-    for (const { pid } of processesOf(folder)) process.kill(pid, 'SIGKILL')
+    killAll(folder)
     await untilNobody(folder)
     const lock = join(cluster, 'postmaster.pid')
     expect(existsSync(lock)).toBe(true)
