@@ -86,11 +86,7 @@ async function start() {
     port: settings.port,
     say: (text) => progress.say(`  ${text}`),
   })
-  opened.push({
-    name: 'the start command',
-    close: async () => claim.release(),
-    force: async () => claim.release(),
-  })
+  process.on('exit', () => claim.release())
 
   for (const host of hostsToProbe(settings.host)) {
     const problem = await portProblem(settings.port, host)
