@@ -292,6 +292,15 @@ const axle = record<Build['axle'], 'ratio' | 'efficiency'>(
   ['ratio', 'efficiency'],
 )
 
+/**
+ * Highest coupling point at which a torque ratio that falls in a straight line from TR0 to 1 never delivers more power than
+ * it takes: SR (1 + a (1 - SR/c)) has its maximum (1 + a)² c / 4a inside when a = TR0 - 1 > 1.
+ */
+export function couplingLimit(stallTorqueRatio: number): number {
+  const a = stallTorqueRatio - 1
+  return a <= 1 ? 1 : (4 * a) / (1 + a) ** 2
+}
+
 /** Which parts of a truck a property needs to hold still. */
 export interface TruckShape {
   /** A bypass may be drawn. */
@@ -396,6 +405,9 @@ export function arbitraryBuild(shape: TruckShape = {}): fc.Arbitrary<Build> {
         stallTorqueRatio: draw.converter.stallTorqueRatio,
         ...draw.converter.optional,
       }
+      // TR·SR would pass 1 between stall and coupling: a converter that makes power.
+      if (converter.couplingPoint !== undefined)
+        converter.couplingPoint = Math.min(converter.couplingPoint, couplingLimit(converter.stallTorqueRatio))
       if (draw.converter.stallTorqueShare !== undefined)
         converter.stallTorqueNm = draw.converter.stallTorqueShare * peakTorqueNm
       if (draw.lockup !== undefined) {

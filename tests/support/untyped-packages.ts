@@ -1,7 +1,7 @@
 import { createRequire } from 'node:module'
 
 /**
- * Two packages without usable type declarations, loaded with the little of their interface that the tests call.
+ * Packages whose type declarations are missing or incomplete, loaded with the little that the tests call.
  * odex: the extrapolation integrator ODEX of Hairer and Wanner. psychrolib: ASHRAE psychrometrics.
  */
 const load = createRequire(import.meta.url)
@@ -36,3 +36,13 @@ export interface Psychrolib {
 }
 
 export const psychrolib = load('psychrolib') as Psychrolib
+
+/** mathjs' integrator, which its type declarations leave out. */
+export const { solveODE } = load('mathjs') as {
+  solveODE(
+    rightHandSide: (time: number, values: number[]) => number[],
+    span: [number, number],
+    start: number[],
+    options: { method: 'RK23' | 'RK45'; tol: number; maxIter: number },
+  ): { t: number[]; y: number[][] }
+}
