@@ -14,7 +14,7 @@ export async function installDebianPackage({ name, what, progress }) {
   const apt = '/usr/bin/apt-get'
   if (process.getuid?.() !== 0 || !existsSync(apt)) {
     throw new Advice(
-      `${what} is missing. Install the package "${name}" (on Debian or Ubuntu: sudo apt-get install ${name}), then run this command again.`,
+      `${what[0]?.toUpperCase()}${what.slice(1)} is missing. Install the package "${name}" (on Debian or Ubuntu: sudo apt-get install ${name}), then run this command again.`,
     )
   }
   const env = { ...process.env, DEBIAN_FRONTEND: 'noninteractive', LC_ALL: 'C.UTF-8' }
