@@ -35,6 +35,12 @@ interface AxisRequest {
   roundEnds?: boolean
 }
 
+/**
+ * A tenth of a pixel is finer than anybody sees, and coarser than the last digits in which the mathematics of two
+ * JavaScript engines differ: server and browser draw the very same numbers.
+ */
+export const toTenth = (pixels: number): number => Math.round(pixels * 10) / 10
+
 const plainNumber = new Intl.NumberFormat('en-US', { maximumFractionDigits: 6 })
 
 /**
@@ -56,10 +62,10 @@ export function linearAxis({ extent, range, unit, tickCount, roundEnds = true }:
     domain: [unit.fromDisplay(domainLow), unit.fromDisplay(domainHigh)],
     ticks: scale.ticks(tickCount).map((tick) => ({
       value: unit.fromDisplay(tick),
-      position: scale(tick),
+      position: toTenth(scale(tick)),
       label: plainNumber.format(tick),
     })),
-    at: (value) => scale(unit.toDisplay(value)),
+    at: (value) => toTenth(scale(unit.toDisplay(value))),
     invert: (position) => unit.fromDisplay(scale.invert(position)),
   }
 }

@@ -1,4 +1,4 @@
-import { linearAxis, type Axis, type AxisUnit } from './axis'
+import { linearAxis, toTenth, type Axis, type AxisUnit } from './axis'
 import { interpolateAt, linePath, splitByRung, thinCurve, type CurvePoint } from './curves'
 import { formatDuration, type ChartFormats } from './formats'
 import { shortenName, spreadLabels } from './labels'
@@ -176,19 +176,20 @@ function drawProfile(data: DriveCycleData, xAxis: Axis, formats: ChartFormats, p
   const rise = highest - lowest
   const bottom = PROFILE_TOP_PX + PROFILE_PX
   // A flat road is drawn flat, low in the strip; a hill never looks steeper than the strip is high.
-  const toY = (height: number) => bottom - 4 - (rise < 1 ? 0 : ((height - lowest) / rise) * (PROFILE_PX - 22))
+  const toY = (height: number) =>
+    toTenth(bottom - 4 - (rise < 1 ? 0 : ((height - lowest) / rise) * (PROFILE_PX - 22)))
   const pixels = points.map((point) => ({ x: xAxis.at(point.x), y: toY(point.y) }))
   const notes: DriveCycleDrawing['profile']['notes'] = []
   let lastX = -Infinity
   data.segments.forEach((segment, index) => {
     const start = pixels[index] as CurvePoint
     const end = pixels[index + 1] as CurvePoint
-    const x = (start.x + end.x) / 2
+    const x = toTenth((start.x + end.x) / 2)
     if (end.x - start.x < 46 || x - lastX < 52) return
     lastX = x
     notes.push({
       x,
-      y: (start.y + end.y) / 2 - 9,
+      y: toTenth((start.y + end.y) / 2 - 9),
       anchor: 'middle',
       text: `${formats.degrees(segment.peakSumpC)}°`,
     })
@@ -207,7 +208,7 @@ function drawSegments(data: DriveCycleData, xAxis: Axis): DriveCycleDrawing['seg
   return data.segments.map((segment) => {
     const x = xAxis.at(startS)
     startS += segment.durationS
-    const width = xAxis.at(startS) - x
+    const width = toTenth(xAxis.at(startS) - x)
     return {
       x,
       width,

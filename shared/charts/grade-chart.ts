@@ -1,4 +1,4 @@
-import { linearAxis, type Axis, type AxisUnit } from './axis'
+import { linearAxis, toTenth, type Axis, type AxisUnit } from './axis'
 import { bandPath, interpolateAt, linePath, splitAtBreaks, splitByRung, type CurvePoint } from './curves'
 import { formatGrade, formatGradeHeld, type ChartFormats } from './formats'
 import { shortenName, spreadLabels } from './labels'
@@ -236,21 +236,20 @@ interface DrawOptions {
 /** From this width on the two panels stand side by side. */
 const SIDE_BY_SIDE_PX = 760
 const LEFT_PX = 40
-const TOP_PX = 44
+const TOP_PX = 30
 const BOTTOM_PX = 40
 const LABEL_PX = 17
 
 /** Lays the whole chart out in pixels; the component only prints it. */
 export function drawGradeChart(
   data: GradeChartData,
-  { width, formats, ceilingC = 165 }: DrawOptions,
+  { width, formats, ceilingC = 175 }: DrawOptions,
 ): GradeDrawing {
   const sideBySide = width >= SIDE_BY_SIDE_PX
   const gap = sideBySide ? 24 : 8
   const panelWidth = sideBySide ? (width - gap) / 2 : width
-  const plotHeight = sideBySide ? 250 : 176
+  const plotHeight = sideBySide ? 250 : 190
   const panelHeight = TOP_PX + plotHeight + BOTTOM_PX
-  const extent = temperatureExtent(data, ceilingC)
   const panels = GRADE_PLACES.map((place, index) =>
     drawPanel(data, place, {
       left: (sideBySide ? index * (panelWidth + gap) : 0) + LEFT_PX,
@@ -258,27 +257,22 @@ export function drawGradeChart(
       width: panelWidth - LEFT_PX - labelColumn(panelWidth),
       height: plotHeight,
       labelWidth: labelColumn(panelWidth),
-      extent,
+      extent: temperatureExtent(data, place, ceilingC),
       formats,
     }),
   )
   return { width, height: sideBySide ? panelHeight : 2 * panelHeight + gap, panels }
 }
 
-const labelColumn = (panelWidth: number): number => (panelWidth < 420 ? 92 : 116)
+const labelColumn = (panelWidth: number): number => (panelWidth < 420 ? 92 : panelWidth < 640 ? 116 : 156)
 
-function temperatureExtent(data: GradeChartData, ceilingC: number): [number, number] {
-  let low = Infinity
-  let high = -Infinity
-  for (const series of data.series)
-    for (const point of series.points) {
-      low = Math.min(low, point.sumpC)
-      high = Math.max(high, point.coolerInletC)
-    }
-  const limits = GRADE_PLACES.flatMap((place) => data.limits[place].map((limit) => limit.fromC))
-  high = Math.max(Number.isFinite(high) ? high : ceilingC, ...limits.map((limit) => limit + 4))
-  low = Number.isFinite(low) ? low : 60
-  return [Math.min(low, 75), Math.max(Math.min(high, ceilingC), Math.min(...limits, ceilingC) + 10)]
+/** Room for the curves and for all three limits, up to a ceiling: each place has its own scale, since its limits are its own. */
+function temperatureExtent(data: GradeChartData, place: GradePlace, ceilingC: number): [number, number] {
+  const temps = data.series.flatMap((series) => series.points.map((point) => point[place]))
+  const limits = data.limits[place].map((limit) => limit.fromC)
+  const low = Math.min(...temps, ...limits.map((limit) => limit - 20))
+  const high = Math.max(...limits.map((limit) => limit + 6), Math.min(Math.max(...temps), ceilingC))
+  return [Number.isFinite(low) ? low : 60, Number.isFinite(high) ? high : ceilingC]
 }
 
 interface PanelBox {
@@ -313,7 +307,7 @@ function drawPanel(data: GradeChartData, place: GradePlace, box: PanelBox): Grad
   labelCurves(curves, data, place, box, { xAxis, yAxis })
   return {
     place,
-    title: GRADE_PLACE_WORDS[place],
+    title: `${GRADE_PLACE_WORDS[place]}, ${yAxis.unit}`,
     left: box.left,
     top: box.top,
     width: box.width,
@@ -425,7 +419,10 @@ function visibleEnd(
   if (!last || outside === -1) return last
   const before = pixels[outside - 1]
   if (!before) return { x: last.x, y: box.top }
-  return { x: before.x + ((last.x - before.x) * (box.top - before.y)) / (last.y - before.y), y: box.top }
+  return {
+    x: toTenth(before.x + ((last.x - before.x) * (box.top - before.y)) / (last.y - before.y)),
+    y: box.top,
+  }
 }
 
 const clamp = (value: number, low: number, high: number): number => Math.min(Math.max(value, low), high)
@@ -465,7 +462,7 @@ function drawBreaks(
     const y1 = clamp(yAxis.at(before[place]), box.top, box.top + box.height)
     const y2 = clamp(yAxis.at(point[place]), box.top, box.top + box.height)
     marks.push({
-      x: (xAxis.at(before.grade) + xAxis.at(point.grade)) / 2,
+      x: toTenth((xAxis.at(before.grade) + xAxis.at(point.grade)) / 2),
       y1,
       y2,
       text: point.locked ? 'locks' : 'lock-up ends',

@@ -1,3 +1,5 @@
+import { toTenth } from './axis'
+
 /** A label that wants to stand at `y` (its middle) and needs `height` pixels. */
 export interface WantedLabel {
   id: string
@@ -22,7 +24,7 @@ export function spreadLabels(
     let edge = top
     const factor = (bottom - top) / needed
     for (const label of sorted) {
-      placed.set(label.id, edge + (label.height * factor) / 2)
+      placed.set(label.id, toTenth(edge + (label.height * factor) / 2))
       edge += label.height * factor
     }
     return placed
@@ -46,7 +48,7 @@ export function spreadLabels(
   for (const group of groups) {
     let edge = group.start
     for (const label of group.labels) {
-      placed.set(label.id, edge + label.height / 2)
+      placed.set(label.id, toTenth(edge + label.height / 2))
       edge += label.height
     }
   }

@@ -18,7 +18,7 @@ import {
 import { milesPerHourToMetersPerSecond } from '../units/conversions'
 import { differenceF, differenceFToK } from '../units/temperature'
 import type { Answer } from './answer'
-import { climbOfInput, computeOtherCurves } from './grade-evidence'
+import { climbOfInput, computeOtherCurves, gradeHeld } from './grade-evidence'
 import { findHill } from './hill'
 import type { DepthRequest, WorkbenchRequest, WorkbenchSetup } from './request'
 
@@ -26,6 +26,8 @@ import type { DepthRequest, WorkbenchRequest, WorkbenchSetup } from './request'
 export interface PeakBands {
   sumpC: { low: number; high: number }
   coolerInletC: { low: number; high: number }
+  /** Of the grade that is held; null where none is, or every grade looked at is. */
+  heldGrade: { low: number; high: number } | null
   /** The largest doubts of the place that decides, in words, with their share of the variance. */
   doubts: { words: string; share: number }[]
 }
@@ -110,7 +112,7 @@ export type DepthStage = (request: DepthRequest, answer: Answer, grades: GradeCh
 
 /** In the order in which a person looks. */
 export const DEPTH_STAGES: readonly DepthStage[] = [
-  (request) => ({ bands: computePeakBands(request) }),
+  (request, _answer, grades) => ({ bands: computePeakBands(request, grades) }),
   (request, _answer, grades) => ({ otherCurves: computeOtherCurves(request, grades) }),
   (request, _answer, grades) => ({ gradeBand: computeGradeBand(request, grades) }),
   (request) => ({ setups: computeSetups(request), alternatives: computeAlternatives(request) }),
@@ -129,9 +131,10 @@ export function computeDepth(request: DepthRequest, answer: Answer, grades: Grad
 
 const MOST_DOUBTS = 4
 
-function computePeakBands(request: DepthRequest): PeakBands {
+function computePeakBands(request: DepthRequest, grades: GradeChartData): PeakBands {
   const { judged } = deriveInputs(request)
-  const bands = simpleBand({ input: judged, spreads: listSpreads(request.sheet) })
+  const spreads = listSpreads(request.sheet)
+  const bands = simpleBand({ input: judged, spreads })
   const span = ({ low, high }: Band) => ({ low: round(low, 2), high: round(high, 2) })
   const decidedBy = judgeAnswer(
     { peakSumpC: bands.peakSumpC.value, peakCoolerInletC: bands.peakCoolerInletC.value },
@@ -141,11 +144,30 @@ function computePeakBands(request: DepthRequest): PeakBands {
   return {
     sumpC: span(bands.peakSumpC),
     coolerInletC: span(bands.peakCoolerInletC),
+    heldGrade: heldGradeBand(judged, spreads, request, grades),
     doubts: decider.parts
       .filter(({ share }) => share > 0.01)
       .slice(0, MOST_DOUBTS)
       .map(({ words, share }) => ({ words, share: round(share, 3) })),
   }
+}
+
+/** How sure the grade is that is held: the same doubts, each moved alone. */
+function heldGradeBand(
+  judged: HeatInput,
+  spreads: ReturnType<typeof listSpreads>,
+  request: DepthRequest,
+  grades: GradeChartData,
+): PeakBands['heldGrade'] {
+  if (grades.held.grade === null || grades.held.endedBy === 'none') return null
+  const hill = findHill(judged.duty)
+  const climb = climbOfInput(judged)
+  const { heldGrade } = simpleBand({
+    input: judged,
+    spreads,
+    measure: (input: HeatInput) => ({ heldGrade: gradeHeld(input, hill, climb, request.limits).grade ?? 0 }),
+  })
+  return { low: round(Math.max(0, heldGrade.low), 4), high: round(heldGrade.high, 4) }
 }
 
 /** Grades at which the band is worked out; between them it is drawn straight. */

@@ -57,7 +57,7 @@ export function computeGradeEvidence(request: WorkbenchRequest, answer: Answer):
   if (climb !== undefined)
     series.push({
       id: 'endless',
-      name: 'If it never ends',
+      name: 'Never-ending climb',
       kind: 'endless',
       points: gradeCurve(inputs.judged, { ...ask, climb: undefined }),
     })
@@ -193,7 +193,13 @@ function withJumpsFound(points: GradePoint[], input: HeatInput, request: CurveRe
   return all.sort((a, b) => a.grade - b.grade)
 }
 
-function gradeHeld(input: HeatInput, hill: Hill, climb: Climb | undefined, limits: Limits): GradeHeldSummary {
+/** The steepest grade of a hill that keeps the limits and holds the speed. */
+export function gradeHeld(
+  input: HeatInput,
+  hill: Hill,
+  climb: Climb | undefined,
+  limits: Limits,
+): GradeHeldSummary {
   const found = findGradeHeld({
     input,
     speedMps: hill.speedMps,
