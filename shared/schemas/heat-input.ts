@@ -110,15 +110,36 @@ export const LockupSchema = z
         })
   })
 
-export const ConverterSchema = z.strictObject({
-  stallRpm: boundedNumber(300, 10_000, 'rev/min', 'stock converters stall at 1600 to 2200'),
-  stallTorqueNm: boundedNumber(1, 10_000, 'N·m at the impeller').optional(),
-  stallTorqueRatio: boundedNumber(1, 5, '', 'usually 1.8 to 2.3'),
-  couplingPoint: boundedNumber(0.3, 1, '(speed ratio)', 'usually 0.88').optional(),
-  heatCapacityJK: heatCapacityJK('usually 12000').optional(),
-  oilShare: fraction('share of the oil in the converter', 'usually 0.35').optional(),
-  lockup: LockupSchema.optional(),
-})
+/** Coupling point where none is given, for the rule below; `shared/heat/resolve.ts` fills in the same. */
+const USUAL_COUPLING_POINT = 0.88
+
+export const ConverterSchema = z
+  .strictObject({
+    stallRpm: boundedNumber(300, 10_000, 'rev/min', 'stock converters stall at 1600 to 2200'),
+    stallTorqueNm: boundedNumber(1, 10_000, 'N·m at the impeller').optional(),
+    stallTorqueRatio: boundedNumber(1, 5, '', 'usually 1.8 to 2.3'),
+    couplingPoint: boundedNumber(0.3, 1, '(speed ratio)', 'usually 0.88').optional(),
+    heatCapacityJK: heatCapacityJK('usually 12000').optional(),
+    oilShare: fraction('share of the oil in the converter', 'usually 0.35').optional(),
+    lockup: LockupSchema.optional(),
+  })
+  .superRefine((converter, context) => {
+    // Torque ratio falls in a straight line from TR0 at stall to 1 at the coupling point c. Its power ratio TR·SR peaks
+    // between them at TR0² c / 4 (TR0 - 1) when TR0 is over 2: past 1 the converter would give more power than it takes.
+    const { stallTorqueRatio, couplingPoint } = converter
+    const coupling = couplingPoint ?? USUAL_COUPLING_POINT
+    if (stallTorqueRatio <= 2 || stallTorqueRatio ** 2 * coupling <= 4 * (stallTorqueRatio - 1) * (1 + 1e-9))
+      return
+    const highest = (4 * (stallTorqueRatio - 1)) / stallTorqueRatio ** 2
+    const largest = (2 * (1 + Math.sqrt(1 - coupling))) / coupling
+    const field = couplingPoint === undefined ? 'stallTorqueRatio' : 'couplingPoint'
+    const most = couplingPoint === undefined ? largest : highest
+    context.addIssue({
+      code: 'custom',
+      path: [field],
+      message: `together with ${couplingPoint === undefined ? `a coupling point of ${coupling}` : `a stall torque ratio of ${stallTorqueRatio}`} the converter would give more power than it takes: must be at most ${(Math.floor(most * 100) / 100).toFixed(2)}`,
+    })
+  })
 
 export const GearSchema = z.strictObject({
   ratio: boundedNumber(0.1, 30, '', '1st is about 2.5 to 4.5, overdrive about 0.7'),
