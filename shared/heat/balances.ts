@@ -113,27 +113,80 @@ export class ThermalPoint {
 
   /** Temperature rates [K/s] of the four coupled temperatures. */
   rates(temperatures: Float64Array, rates: Float64Array): void {
+    this.circuit.evaluate(temperatures[SUMP]!, temperatures[CONVERTER]!, temperatures[COOLANT]!)
+    this.fillRates(temperatures, rates)
+  }
+
+  /** The same with the oil loop as last read, for temperatures a moment later. */
+  ratesWithLoopKept(temperatures: Float64Array, rates: Float64Array): void {
+    this.circuit.evaluateWithLoopKept(temperatures[CONVERTER]!, temperatures[COOLANT]!)
+    this.fillRates(temperatures, rates)
+  }
+
+  private fillRates(temperatures: Float64Array, rates: Float64Array): void {
+    const { masses } = this
+    const { chain, loopState } = this.circuit
     const sumpC = temperatures[SUMP]!
-    const converterC = temperatures[CONVERTER]!
     const caseC = temperatures[CASE]!
-    const coolantC = temperatures[COOLANT]!
-    const { circuit, masses } = this
-    circuit.evaluate(sumpC, converterC, coolantC)
-    const { oilCapacityRate, spinFactor } = circuit.loopState
+    const toConverter = loopState.oilCapacityRate * (temperatures[CONVERTER]! - sumpC)
     const toCase = OIL_CASE_CONDUCTANCE_W_K * (sumpC - caseC)
-    const sumpW =
-      this.fixedW +
-      this.spinReferenceW * spinFactor +
-      oilCapacityRate * (circuit.returnC - sumpC) -
-      this.panConductance * (sumpC - this.underbodyC) -
-      toCase
-    const sumpCapacity = oilDensity(masses.oil, sumpC) * masses.fluidVolumeM3 * oilHeatCapacity(sumpC)
-    rates[SUMP] = sumpW / sumpCapacity
-    rates[CONVERTER] =
-      (this.converterW - oilCapacityRate * (converterC - sumpC)) / masses.converterHeatCapacityJK
+    rates[SUMP] =
+      (this.fixedW +
+        this.spinReferenceW * loopState.spinFactor +
+        toConverter -
+        chain.heatCoolersW -
+        this.panConductance * (sumpC - this.underbodyC) -
+        toCase) /
+      this.sumpCapacity(sumpC)
+    rates[CONVERTER] = (this.converterW - toConverter) / masses.converterHeatCapacityJK
     rates[CASE] = (toCase - this.caseConductance * (caseC - this.underbodyC)) / masses.caseHeatCapacityJK
     rates[COOLANT] =
-      (this.engineToCoolantW + circuit.tankHeatW - circuit.radiatorHeatW) / masses.coolantHeatCapacityJK
+      (this.engineToCoolantW + chain.tankHeatW - chain.radiatorHeatW) / masses.coolantHeatCapacityJK
+  }
+
+  private sumpCapacity(sumpC: number): number {
+    return oilDensity(this.masses.oil, sumpC) * this.masses.fluidVolumeM3 * oilHeatCapacity(sumpC)
+  }
+
+  /**
+   * Slopes of the rates over the temperatures [1/s], row by row, at temperatures whose rates were just asked.
+   * @param temperatures - [°C]
+   * @param rates - at those temperatures [K/s]
+   * @param slopes - 4 × 4, is written
+   */
+  jacobian(temperatures: Float64Array, rates: Float64Array, slopes: Float64Array): void {
+    const { circuit, masses } = this
+    const sumpC = temperatures[SUMP]!
+    const converterC = temperatures[CONVERTER]!
+    circuit.updateSlopes(sumpC, converterC, temperatures[COOLANT]!)
+    const { coolers, tank, radiator, oilCapacityRate: rateSlope, spinFactor } = circuit.slopes
+    const rate = circuit.loopState.oilCapacityRate
+    const hotSlope = rateSlope * (converterC - sumpC) - rate
+    const capacity = this.sumpCapacity(sumpC)
+    const capacitySlope = this.sumpCapacity(sumpC + 1) - capacity
+    slopes[0] =
+      (this.spinReferenceW * spinFactor +
+        hotSlope -
+        coolers[0]! -
+        this.panConductance -
+        OIL_CASE_CONDUCTANCE_W_K -
+        rates[SUMP]! * capacitySlope) /
+      capacity
+    slopes[1] = (rate - coolers[1]!) / capacity
+    slopes[2] = OIL_CASE_CONDUCTANCE_W_K / capacity
+    slopes[3] = -coolers[2]! / capacity
+    slopes[4] = -hotSlope / masses.converterHeatCapacityJK
+    slopes[5] = -rate / masses.converterHeatCapacityJK
+    slopes[6] = 0
+    slopes[7] = 0
+    slopes[8] = OIL_CASE_CONDUCTANCE_W_K / masses.caseHeatCapacityJK
+    slopes[9] = 0
+    slopes[10] = -(OIL_CASE_CONDUCTANCE_W_K + this.caseConductance) / masses.caseHeatCapacityJK
+    slopes[11] = 0
+    slopes[12] = (tank[0]! - radiator[0]!) / masses.coolantHeatCapacityJK
+    slopes[13] = (tank[1]! - radiator[1]!) / masses.coolantHeatCapacityJK
+    slopes[14] = 0
+    slopes[15] = (tank[2]! - radiator[2]!) / masses.coolantHeatCapacityJK
   }
 
   /** Case metal at rest with a sump temperature [°C]. */
@@ -164,15 +217,15 @@ export class ThermalPoint {
       coolerFlowM3S: circuit.loopState.volumeFlow,
       heatGeneratedW: this.converterW + this.fixedW + heatSpinW,
       heatSpinW,
-      heatCoolersW: circuit.heatCoolersW,
-      coolerHeatW: Array.from(circuit.coolerHeatW),
+      heatCoolersW: circuit.chain.heatCoolersW,
+      coolerHeatW: circuit.coolerHeats(),
       heatPanCaseW:
         this.panConductance * (sumpC - this.underbodyC) + this.caseConductance * (caseC - this.underbodyC),
       heatEngineToCoolantW: this.engineToCoolantW,
-      heatRadiatorW: circuit.radiatorHeatW,
+      heatRadiatorW: circuit.chain.radiatorHeatW,
       faceVelocityMps: circuit.air.faceVelocityMps,
       thermostatOpen: circuit.thermostatOpen,
-      radiatorOutC: circuit.radiatorOutC,
+      radiatorOutC: circuit.chain.radiatorOutC,
     }
   }
 

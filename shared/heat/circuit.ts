@@ -1,9 +1,12 @@
 import { RATING_AIR_DENSITY_KG_M3 } from './air'
 import { emptyAirSide, updateAirSide } from './air-side'
 import type { AirSide } from './air-side'
+import { makeChain, solveChain } from './chain'
+import type { Chain } from './chain'
 import type { CoolingSystem, Window } from './cooling-system'
 import { airCapacityRate } from './coolers'
-import { crossFlowEffectiveness } from './effectiveness'
+import { exchangerConductance } from './effectiveness'
+import type { ExchangerConductance } from './effectiveness'
 import { COOLANT_HEAT_CAPACITY_J_M3_K } from './fluids'
 import { makeLoopState } from './loop-flow'
 import type { LoopSource, LoopState } from './loop-flow'
@@ -16,70 +19,98 @@ const LARGEST_COOLANT_FACTOR = 1.5
 const RADIATOR_AIR_SHARE = 0.8
 const RADIATOR_AIR_EXPONENT = 0.5
 const RADIATOR_COOLANT_EXPONENT = 0.8
+/** Step of temperature in the slopes [K]. */
+const NUDGE_K = 1e-3
 
 /** How far a wax element has opened, 0 to 1. */
 export function openShare(window: Window, tempC: number): number {
   return Math.min(1, Math.max(0, (tempC - window.openC) / (window.fullC - window.openC)))
 }
 
+/** Opening per kelvin; 0 where it is shut or fully open. */
+function openSlope(window: Window, share: number): number {
+  return share > 0 && share < 1 ? 1 / (window.fullC - window.openC) : 0
+}
+
 const power = (base: number, exponent: number) => Math.exp(exponent * Math.log(base))
+
+/** How the heats of the circuit answer to sump, hot line and coolant, in this order [W/K]; and the loop to the sump. */
+export interface CircuitSlopes {
+  coolers: Float64Array
+  tank: Float64Array
+  radiator: Float64Array
+  oilCapacityRate: number
+  spinFactor: number
+}
 
 /**
  * One operating point's cooling circuit. `configure` sets the point, `evaluate` solves it for three temperatures and
- * leaves the answer in the fields. Conductances depend on the sump temperature and the bypass (oil side) and on the thermostat (coolant side)
- * only, and are kept from call to call while those do not change; what is left is linear in the temperatures.
+ * leaves the answer in the fields. Conductances depend on the sump temperature and the bypass (oil side) and on the
+ * thermostat (coolant side) only, and are kept from call to call while those do not change; what is left is linear.
  */
 export class Circuit {
-  /** Heat of each cooler from oil to its sink [W]. */
-  readonly coolerHeatW: Float64Array
   readonly loopState: LoopState
   readonly air: AirSide
-  heatCoolersW = 0
-  tankHeatW = 0
-  radiatorHeatW = 0
   returnC = 0
-  radiatorOutC = 0
   thermostatOpen = 0
   bypassShare = 1
+  readonly chain: Chain
+  readonly slopes: CircuitSlopes = {
+    coolers: new Float64Array(3),
+    tank: new Float64Array(3),
+    radiator: new Float64Array(3),
+    oilCapacityRate: 0,
+    spinFactor: 0,
+  }
 
   private readonly system: CoolingSystem
   private source: LoopSource | undefined
-  private coolantFactor = 0
-  /** Air-side (or coolant-side, at full thermostat) resistance terms and capacity rates per cooler. */
-  private readonly sinkTerm: Float64Array
-  private readonly sinkRate: Float64Array
-  private radiatorAirTerm = 0
-  private radiatorCoolantTerm = 0
-  private readonly isTank: Uint8Array
-  private readonly inStack: Uint8Array
+  private readonly count: number
   private readonly hasTank: boolean
-  /** ε C_min of each cooler [W/K]. */
-  private readonly conductance: Float64Array
-  /** Capacity rate of the oil through each cooler [W/K]. */
+  private coolantFactor = 0
+  private fullCoolantRate = 0
+  /** Sink-side resistance and capacity rate per cooler: air now, coolant at full thermostat. */
+  private readonly fullSinkTerm: Float64Array
+  private readonly airRate: Float64Array
+  private radiatorAirTerm = 0
+  private radiatorFullCoolantTerm = 0
+  /** Resistances, conductances and capacity rates as last used, per cooler. */
+  private readonly sinkTerm: Float64Array
+  private readonly oilTerm: Float64Array
+  private readonly ua: Float64Array
   private readonly oilRate: Float64Array
+  private coolantPower = 1
+  private radiatorUa = 0
+  private readonly radiator: ExchangerConductance = { conductance: 0, overUa: 0, overRateA: 0, overRateB: 0 }
+  private readonly exchangers: ExchangerConductance[]
   private keptSumpC = NaN
   private usedSumpC = NaN
   private keptBypass = NaN
   private keptOpen = NaN
-  private keptTankOpen = NaN
-  private coolantRate = 0
-  private coolantPower = 0
-  private radiatorConductance = 0
+  private readonly nudged: Chain
+  private readonly nudgedLoop: LoopState
 
   constructor(system: CoolingSystem) {
-    const { coolers } = system
-    const count = coolers.length
+    const { coolers, loop } = system
     this.system = system
-    this.air = emptyAirSide(count)
-    this.loopState = makeLoopState(count)
-    this.coolerHeatW = new Float64Array(count)
-    this.conductance = new Float64Array(count)
-    this.oilRate = new Float64Array(count)
-    this.sinkTerm = new Float64Array(count)
-    this.sinkRate = new Float64Array(count)
-    this.isTank = Uint8Array.from(coolers, (cooler) => (cooler.position === 'radiator-tank' ? 1 : 0))
-    this.inStack = Uint8Array.from(coolers, (cooler) => (cooler.inStack ? 1 : 0))
-    this.hasTank = this.isTank.includes(1)
+    this.count = coolers.length
+    this.air = emptyAirSide(this.count)
+    this.loopState = makeLoopState(this.count)
+    this.nudgedLoop = makeLoopState(this.count)
+    this.fullSinkTerm = new Float64Array(this.count)
+    this.airRate = new Float64Array(this.count)
+    this.sinkTerm = new Float64Array(this.count)
+    this.oilTerm = new Float64Array(this.count)
+    this.ua = new Float64Array(this.count)
+    this.oilRate = new Float64Array(this.count)
+    this.exchangers = coolers.map(() => ({ conductance: 0, overUa: 0, overRateA: 0, overRateB: 0 }))
+    const isTank = Uint8Array.from(coolers, (cooler) => (cooler.position === 'radiator-tank' ? 1 : 0))
+    const inStack = Uint8Array.from(coolers, (cooler) => (cooler.inStack ? 1 : 0))
+    const opensGroup = new Uint8Array(this.count)
+    for (const group of loop.groups) opensGroup[group[0]!] = 1
+    this.hasTank = isTank.includes(1)
+    this.chain = makeChain(isTank, inStack, opensGroup, this.air.coolerAirC)
+    this.nudged = makeChain(isTank, inStack, opensGroup, this.air.coolerAirC)
   }
 
   /**
@@ -90,52 +121,30 @@ export class Circuit {
    */
   configure(airSpeed: number, engineSpeed: number, source: LoopSource): void {
     const { site, cooling, coolers, radiator, condenserW } = this.system
-    const { air } = this
+    const { air, chain, nudged } = this
     this.source = source
-    this.keptSumpC = this.usedSumpC = this.keptBypass = this.keptOpen = this.keptTankOpen = NaN
+    this.keptSumpC = this.usedSumpC = this.keptBypass = this.keptOpen = NaN
     updateAirSide(air, site, cooling, coolers, condenserW, airSpeed, engineSpeed)
+    chain.stackRate = nudged.stackRate = air.stackCapacityRate
+    chain.behindCondenserC = nudged.behindCondenserC = air.behindCondenserC
     this.coolantFactor = Math.min(LARGEST_COOLANT_FACTOR, engineSpeed / radiator.pumpSpeed)
+    const fullFlow = this.coolantFactor * radiator.ratedCoolantFlowM3S
+    this.fullCoolantRate = fullFlow * COOLANT_HEAT_CAPACITY_J_M3_K
     const densityRatio = site.airDensityKgM3 / RATING_AIR_DENSITY_KG_M3
-    for (let index = 0; index < coolers.length; index++) {
+    for (let index = 0; index < this.count; index++) {
       const cooler = coolers[index]!
-      if (this.isTank[index] === 1) {
-        const fullFlow = this.coolantFactor * radiator.ratedCoolantFlowM3S
-        this.sinkTerm[index] =
-          cooler.airShare * power(fullFlow / cooler.ratedCoolantFlowM3S, -cooler.law.airExponent)
-        continue
-      }
+      const tank = chain.isTank[index] === 1
       const velocity = air.coolerVelocityMps[index]!
-      this.sinkTerm[index] =
-        cooler.airShare *
-        power((velocity * densityRatio) / cooler.ratedAirVelocityMps, -cooler.law.airExponent)
-      this.sinkRate[index] = airCapacityRate(site.airDensityKgM3, cooler.faceAreaM2, velocity)
+      const ratio = tank
+        ? fullFlow / cooler.ratedCoolantFlowM3S
+        : (velocity * densityRatio) / cooler.ratedAirVelocityMps
+      this.fullSinkTerm[index] = cooler.airShare * power(ratio, -cooler.law.airExponent)
+      this.airRate[index] = tank ? 0 : airCapacityRate(site.airDensityKgM3, cooler.faceAreaM2, velocity)
     }
     this.radiatorAirTerm =
-      RADIATOR_AIR_SHARE *
-      power((air.faceVelocityMps * densityRatio) / radiator.ratedAirVelocityMps, -RADIATOR_AIR_EXPONENT)
-    this.radiatorCoolantTerm =
+      RADIATOR_AIR_SHARE / Math.sqrt((air.faceVelocityMps * densityRatio) / radiator.ratedAirVelocityMps)
+    this.radiatorFullCoolantTerm =
       (1 - RADIATOR_AIR_SHARE) * power(this.coolantFactor, -RADIATOR_COOLANT_EXPONENT)
-  }
-
-  /**
-   * Solves oil loop, coolers and radiator.
-   * @param sumpC - sump [°C]
-   * @param inletC - hot line [°C]
-   * @param coolantC - coolant [°C]
-   * Source: energy balances of each exchanger; the chain is linear in the radiator's outlet temperature.
-   */
-  evaluate(sumpC: number, inletC: number, coolantC: number): void {
-    const { bypass, radiator } = this.system
-    this.bypassShare = bypass === null ? 1 : openShare(bypass, inletC)
-    this.thermostatOpen = openShare(radiator.thermostat, coolantC)
-    this.readLoop(sumpC)
-    const oilChanged = sumpC !== this.usedSumpC || this.bypassShare !== this.keptBypass
-    this.usedSumpC = sumpC
-    if (this.thermostatOpen !== this.keptOpen) this.updateRadiator()
-    if (oilChanged) this.updateAirCoolers()
-    if (this.hasTank && (oilChanged || this.thermostatOpen !== this.keptTankOpen)) this.updateTanks()
-    this.keptBypass = this.bypassShare
-    this.solveChain(inletC, coolantC)
   }
 
   /** Reads flow and oil properties at a sump temperature into `loopState`. */
@@ -145,129 +154,191 @@ export class Circuit {
     this.keptSumpC = sumpC
   }
 
-  private updateRadiator(): void {
-    const { radiator } = this.system
-    const open = this.thermostatOpen
+  /**
+   * Solves oil loop, coolers and radiator.
+   * @param sumpC - sump [°C]
+   * @param inletC - hot line [°C]
+   * @param coolantC - coolant [°C]
+   */
+  evaluate(sumpC: number, inletC: number, coolantC: number): void {
+    this.readLoop(sumpC)
+    this.solve(sumpC, inletC, coolantC)
+  }
+
+  /** The same with the loop as last read, for temperatures a moment later. */
+  evaluateWithLoopKept(inletC: number, coolantC: number): void {
+    this.solve(this.keptSumpC, inletC, coolantC)
+  }
+
+  private solve(sumpC: number, inletC: number, coolantC: number): void {
+    const { bypass, radiator } = this.system
+    const { chain } = this
+    const share = bypass === null ? 1 : openShare(bypass, inletC)
+    const open = openShare(radiator.thermostat, coolantC)
+    const oilChanged = sumpC !== this.usedSumpC || share !== this.keptBypass
+    const openChanged = open !== this.keptOpen
+    this.bypassShare = share
+    this.thermostatOpen = open
+    if (openChanged) this.updateRadiator(open)
+    if (oilChanged) this.updateOilSide(share)
+    if (this.hasTank && (oilChanged || openChanged)) this.updateTanks()
+    this.usedSumpC = sumpC
+    this.keptBypass = share
     this.keptOpen = open
-    this.coolantRate = open * this.coolantFactor * radiator.ratedCoolantFlowM3S * COOLANT_HEAT_CAPACITY_J_M3_K
+    solveChain(chain, inletC, coolantC)
+    this.returnC = inletC - chain.heatCoolersW / this.loopState.oilCapacityRate
+  }
+
+  private updateRadiator(open: number): void {
+    const { chain } = this
+    chain.coolantRate = open * this.fullCoolantRate
     if (open === 0) {
-      this.radiatorConductance = 0
+      chain.radiatorConductance = 0
       return
     }
-    this.coolantPower = Math.exp(-RADIATOR_COOLANT_EXPONENT * Math.log(open))
-    const ua = radiator.uaRatedWK / (this.radiatorAirTerm + this.radiatorCoolantTerm * this.coolantPower)
-    const smaller = Math.min(this.coolantRate, this.air.stackCapacityRate)
-    const larger = Math.max(this.coolantRate, this.air.stackCapacityRate)
-    this.radiatorConductance = crossFlowEffectiveness(ua / smaller, smaller / larger) * smaller
+    this.coolantPower = open === 1 ? 1 : power(open, -RADIATOR_COOLANT_EXPONENT)
+    this.radiatorUa =
+      this.system.radiator.uaRatedWK /
+      (this.radiatorAirTerm + this.radiatorFullCoolantTerm * this.coolantPower)
+    exchangerConductance(this.radiatorUa, chain.coolantRate, chain.stackRate, this.radiator)
+    chain.radiatorConductance = this.radiator.conductance
   }
 
-  /** Conductance ε C_min of one cooler for a sink-side resistance and capacity rate. */
-  private coolerConductance(index: number, sinkTerm: number, sinkRate: number): number {
-    const cooler = this.system.coolers[index]!
-    const oilRate = this.oilRate[index]!
-    if (oilRate <= 0 || sinkRate <= 0) return 0
-    const slow = this.bypassShare === 1 ? 1 : Math.exp(-cooler.law.flowExponent * Math.log(this.bypassShare))
-    const oilTerm = (1 - cooler.airShare) * this.loopState.oilSide[index]! * slow
-    const ua = (cooler.uaRatedWK * this.system.coolerScale) / (sinkTerm + oilTerm)
-    const smaller = Math.min(oilRate, sinkRate)
-    return crossFlowEffectiveness(ua / smaller, smaller / Math.max(oilRate, sinkRate)) * smaller
-  }
-
-  private updateAirCoolers(): void {
-    const rate = this.loopState.oilCapacityRate * this.bypassShare
-    for (let index = 0; index < this.conductance.length; index++) {
-      this.oilRate[index] = rate * this.loopState.shares[index]!
-      if (this.isTank[index] === 1) continue
-      this.conductance[index] = this.coolerConductance(index, this.sinkTerm[index]!, this.sinkRate[index]!)
+  /** Oil side of every cooler, and the conductance of those in air. */
+  private updateOilSide(share: number): void {
+    const { chain, loopState } = this
+    const { coolers } = this.system
+    const rate = loopState.oilCapacityRate * share
+    chain.oilRate = rate
+    for (let index = 0; index < this.count; index++) {
+      const cooler = coolers[index]!
+      const slow = share === 1 || share === 0 ? 1 : power(share, -cooler.law.flowExponent)
+      this.oilRate[index] = rate * loopState.shares[index]!
+      this.oilTerm[index] = (1 - cooler.airShare) * loopState.oilSide[index]! * slow
+      if (chain.isTank[index] === 1) continue
+      this.sinkTerm[index] = this.fullSinkTerm[index]!
+      this.updateConductance(index, this.airRate[index]!)
     }
   }
 
   private updateTanks(): void {
-    this.keptTankOpen = this.thermostatOpen
-    for (let index = 0; index < this.conductance.length; index++)
-      if (this.isTank[index] === 1)
-        this.conductance[index] = this.coolerConductance(
-          index,
-          this.sinkTerm[index]! * this.coolantPower,
-          this.coolantRate,
-        )
+    const { chain } = this
+    for (let index = 0; index < this.count; index++) {
+      if (chain.isTank[index] !== 1) continue
+      this.sinkTerm[index] = this.fullSinkTerm[index]! * this.coolantPower
+      this.updateConductance(index, chain.coolantRate)
+    }
+  }
+
+  private updateConductance(index: number, sinkRate: number): void {
+    const { system, chain } = this
+    const oilRate = this.oilRate[index]!
+    const ua =
+      (system.coolers[index]!.uaRatedWK * system.coolerScale) / (this.sinkTerm[index]! + this.oilTerm[index]!)
+    this.ua[index] = ua
+    if (oilRate > 0 && sinkRate > 0) {
+      const exchanger = this.exchangers[index]!
+      exchangerConductance(ua, oilRate, sinkRate, exchanger)
+      chain.conductance[index] = exchanger.conductance
+    } else chain.conductance[index] = 0
   }
 
   /**
-   * Walks the oil through the groups with every temperature as a + b T_out, T_out the radiator's outlet; closes with
-   * the radiator; then books the heats.
+   * Slopes of the heats at the temperatures last evaluated: conductances are moved along their tangents and the chain
+   * is solved again, so that no transcendental function is asked a second time.
    */
-  private solveChain(inletC: number, coolantC: number): void {
-    const { groups } = this.system.loop
-    const { isTank, inStack, conductance, coolerHeatW, air } = this
-    const total = this.loopState.oilCapacityRate * this.bypassShare
-    let a = inletC
-    let b = 0
-    let stackHeatA = 0
-    let stackHeatB = 0
-    if (this.hasTank && this.coolantRate > 0) {
-      if (total > 0)
-        for (const group of groups) {
-          let heatA = 0
-          let heatB = 0
-          for (const index of group) {
-            const g = conductance[index]!
-            const tank = isTank[index] === 1
-            const qa = g * (a - (tank ? 0 : air.coolerAirC[index]!))
-            const qb = g * (b - (tank ? 1 : 0))
-            heatA += qa
-            heatB += qb
-            if (inStack[index] === 1) {
-              stackHeatA += qa
-              stackHeatB += qb
-            }
-          }
-          a -= heatA / total
-          b -= heatB / total
-        }
-      const share = this.radiatorConductance / this.coolantRate
-      const rise = share / air.stackCapacityRate
-      const outlet =
-        (coolantC * (1 - share) + share * air.behindCondenserC + rise * stackHeatA) /
-        Math.max(1e-3, 1 - rise * stackHeatB)
-      this.radiatorOutC = outlet
-    }
-    this.bookCoolers(inletC, total)
-    let stackHeat = 0
-    for (let index = 0; index < coolerHeatW.length; index++)
-      if (inStack[index] === 1) stackHeat += coolerHeatW[index]!
-    if (this.coolantRate > 0) {
-      const airC = air.behindCondenserC + stackHeat / air.stackCapacityRate
-      this.radiatorHeatW = this.radiatorConductance * (coolantC - airC)
-      this.radiatorOutC = coolantC - this.radiatorHeatW / this.coolantRate
-    } else {
-      this.radiatorHeatW = 0
-      this.radiatorOutC = coolantC
+  updateSlopes(sumpC: number, inletC: number, coolantC: number): void {
+    const { chain, nudged, loopState, nudgedLoop, slopes } = this
+    const { bypass, radiator } = this.system
+    nudgedLoop.volumeFlow = loopState.volumeFlow
+    this.source?.read(sumpC + NUDGE_K, nudgedLoop)
+    slopes.oilCapacityRate = (nudgedLoop.oilCapacityRate - loopState.oilCapacityRate) / NUDGE_K
+    slopes.spinFactor = (nudgedLoop.spinFactor - loopState.spinFactor) / NUDGE_K
+    nudged.coolantRate = chain.coolantRate
+    nudged.radiatorConductance = chain.radiatorConductance
+    const bypassSlope = bypass === null ? 0 : openSlope(bypass, this.bypassShare)
+    const openingSlope = openSlope(radiator.thermostat, this.thermostatOpen)
+    this.nudgeSump()
+    this.bookSlopes(0, inletC, coolantC)
+    this.nudgeBypass(NUDGE_K * bypassSlope)
+    this.bookSlopes(1, inletC + NUDGE_K, coolantC)
+    this.nudgeThermostat(NUDGE_K * openingSlope)
+    this.bookSlopes(2, inletC, coolantC + NUDGE_K)
+  }
+
+  private bookSlopes(column: number, inletC: number, coolantC: number): void {
+    const { chain, nudged, slopes } = this
+    solveChain(nudged, inletC, coolantC)
+    slopes.coolers[column] = (nudged.heatCoolersW - chain.heatCoolersW) / NUDGE_K
+    slopes.tank[column] = (nudged.tankHeatW - chain.tankHeatW) / NUDGE_K
+    slopes.radiator[column] = (nudged.radiatorHeatW - chain.radiatorHeatW) / NUDGE_K
+  }
+
+  /** Sump a moment warmer: flow, oil-side resistance and capacity rate of every cooler move. */
+  private nudgeSump(): void {
+    const { chain, nudged, loopState, nudgedLoop } = this
+    const share = this.bypassShare
+    nudged.oilRate = nudgedLoop.oilCapacityRate * share
+    for (let index = 0; index < this.count; index++) {
+      const termStep = this.oilTerm[index]! * (nudgedLoop.oilSide[index]! / loopState.oilSide[index]! - 1)
+      const rateStep = nudged.oilRate * nudgedLoop.shares[index]! - this.oilRate[index]!
+      nudged.conductance[index] =
+        chain.conductance[index]! + this.conductanceStep(index, termStep, rateStep, 0)
     }
   }
 
-  private bookCoolers(inletC: number, total: number): void {
-    const { isTank, conductance, coolerHeatW, air } = this
-    let oilC = inletC
-    let heat = 0
-    let tankHeat = 0
-    for (const group of this.system.loop.groups) {
-      let groupHeat = 0
-      for (const index of group) {
-        const tank = isTank[index] === 1
-        const q =
-          total > 0 && !(tank && this.coolantRate === 0)
-            ? conductance[index]! * (oilC - (tank ? this.radiatorOutC : air.coolerAirC[index]!))
-            : 0
-        coolerHeatW[index] = q
-        groupHeat += q
-        if (tank) tankHeat += q
-      }
-      if (total > 0) oilC -= groupHeat / total
-      heat += groupHeat
+  /** Bypass a moment wider. */
+  private nudgeBypass(step: number): void {
+    const { chain, nudged } = this
+    const share = this.bypassShare
+    nudged.oilRate = chain.oilRate
+    if (step === 0) {
+      nudged.conductance.set(chain.conductance)
+      return
     }
-    this.heatCoolersW = heat
-    this.tankHeatW = tankHeat
-    this.returnC = inletC - heat / this.loopState.oilCapacityRate
+    nudged.oilRate *= 1 + step / share
+    for (let index = 0; index < this.count; index++) {
+      const termStep = (-this.system.coolers[index]!.law.flowExponent * this.oilTerm[index]! * step) / share
+      const rateStep = (this.oilRate[index]! * step) / share
+      nudged.conductance[index] =
+        chain.conductance[index]! + this.conductanceStep(index, termStep, rateStep, 0)
+    }
+  }
+
+  /** Thermostat a moment wider: coolant flow through radiator and tanks. */
+  private nudgeThermostat(step: number): void {
+    const { chain, nudged } = this
+    nudged.oilRate = chain.oilRate
+    nudged.conductance.set(chain.conductance)
+    if (step === 0) return
+    const open = this.thermostatOpen
+    const rateStep = this.fullCoolantRate * step
+    for (let index = 0; index < this.count; index++) {
+      if (chain.isTank[index] !== 1) continue
+      const termStep = (-this.system.coolers[index]!.law.airExponent * this.sinkTerm[index]! * step) / open
+      nudged.conductance[index]! += this.conductanceStep(index, termStep, 0, rateStep)
+    }
+    nudged.coolantRate = chain.coolantRate + rateStep
+    const termStep =
+      -RADIATOR_COOLANT_EXPONENT * this.radiatorFullCoolantTerm * this.coolantPower * (step / open)
+    const uaStep = (-this.radiatorUa * this.radiatorUa * termStep) / this.system.radiator.uaRatedWK
+    nudged.radiatorConductance =
+      chain.radiatorConductance + this.radiator.overUa * uaStep + this.radiator.overRateA * rateStep
+  }
+
+  /** Change of one cooler's conductance for small changes of its resistance and capacity rates. */
+  private conductanceStep(index: number, termStep: number, oilStep: number, sinkStep: number): number {
+    const { chain, system } = this
+    if (chain.conductance[index] === 0) return 0
+    const ua = this.ua[index]!
+    const uaStep = (-ua * ua * termStep) / (system.coolers[index]!.uaRatedWK * system.coolerScale)
+    const exchanger = this.exchangers[index]!
+    return exchanger.overUa * uaStep + exchanger.overRateA * oilStep + exchanger.overRateB * sinkStep
+  }
+
+  /** Heat of each cooler from oil to its sink [W]. */
+  coolerHeats(): number[] {
+    const { heatA, heatB, radiatorOutC } = this.chain
+    return Array.from(heatA, (a, index) => a + heatB[index]! * radiatorOutC)
   }
 }

@@ -24,6 +24,59 @@ export function crossFlowEffectiveness(ntu: number, capacityRatio: number): numb
   return 1 - Math.exp((slow / capacityRatio) * decay)
 }
 
+/** Conductance of an exchanger and how it answers to its UA and capacity rates. */
+export interface ExchangerConductance {
+  /** ε C_min: heat per inlet difference [W/K]. */
+  conductance: number
+  overUa: number
+  overRateA: number
+  overRateB: number
+}
+
+/**
+ * Conductance ε C_min of an exchanger and its slopes, written into `out`.
+ * Equation: with E = NTU^0.22/Cr (D - 1), D = exp(-Cr NTU^0.78): ∂E/∂NTU = 0.22 E/NTU - 0.78 D, ∂E/∂Cr = -(E + D NTU)/Cr.
+ * @param ua - UA [W/K], above 0
+ * @param rateA - capacity rate of one side [W/K], above 0
+ * @param rateB - of the other [W/K], above 0
+ * @param out - is written
+ */
+export function exchangerConductance(
+  ua: number,
+  rateA: number,
+  rateB: number,
+  out: ExchangerConductance,
+): void {
+  const aIsSmaller = rateA < rateB
+  const smaller = aIsSmaller ? rateA : rateB
+  const larger = aIsSmaller ? rateB : rateA
+  const ntu = ua / smaller
+  const ratio = smaller / larger
+  let effectiveness: number
+  let overNtu: number
+  let overRatio = 0
+  if (ratio < 1e-9) {
+    const rest = Math.exp(-ntu)
+    effectiveness = 1 - rest
+    overNtu = rest
+  } else {
+    const slow = Math.exp(0.22 * Math.log(ntu))
+    const argument = (-ratio * ntu) / slow
+    const decay = argument < -1e-4 ? Math.exp(argument) - 1 : Math.expm1(argument)
+    const exponent = (slow / ratio) * decay
+    const rest = Math.exp(exponent)
+    effectiveness = 1 - rest
+    overNtu = rest * (0.78 * (decay + 1) - (0.22 * exponent) / ntu)
+    overRatio = (rest * (exponent + (decay + 1) * ntu)) / ratio
+  }
+  const overSmaller = effectiveness - ntu * overNtu + ratio * overRatio
+  const overLarger = -ratio * ratio * overRatio
+  out.conductance = smaller * effectiveness
+  out.overUa = overNtu
+  out.overRateA = aIsSmaller ? overSmaller : overLarger
+  out.overRateB = aIsSmaller ? overLarger : overSmaller
+}
+
 /**
  * NTU that gives an effectiveness; inverse of `crossFlowEffectiveness`.
  * @param effectiveness - ε, above 0

@@ -7,7 +7,9 @@ import { integrate } from './integrator'
 const CLOSE_K = 1e-9
 const LONGEST_STEP_K = 25
 const NEWTON_STEPS = 30
-const PERTURBATION_K = 1e-4
+/** How near the coolant must come to rest for a look at the sump [K], and how long it may take. */
+const COOLANT_CLOSE_K = 1e-2
+const COOLANT_STEPS = 20
 /** A long integration doubles its span from here [s] until nothing moves. */
 const FIRST_SPAN_S = 2000
 const LONGEST_SPAN_S = 1e9
@@ -16,12 +18,13 @@ const STILL_K_S = 1e-9
 
 const temperatures = new Float64Array(COUPLED)
 const rates = new Float64Array(COUPLED)
+const slopes = new Float64Array(COUPLED * COUPLED)
 
 /**
- * Rates of sump and coolant with converter and case at rest beside them: the slow pair every equilibrium must still.
- * Leaves the four temperatures in `temperatures`.
+ * Rates with converter and case at rest beside a sump temperature: what is left is the slow pair, sump and coolant.
+ * Leaves the four temperatures in `temperatures` and their rates in `rates`.
  */
-function slowRates(thermal: ThermalPoint, sumpC: number, coolantC: number): [sump: number, coolant: number] {
+function fillSlowRates(thermal: ThermalPoint, sumpC: number, coolantC: number): void {
   const { circuit } = thermal
   temperatures[SUMP] = sumpC
   temperatures[COOLANT] = coolantC
@@ -29,7 +32,6 @@ function slowRates(thermal: ThermalPoint, sumpC: number, coolantC: number): [sum
   circuit.readLoop(sumpC)
   temperatures[CONVERTER] = sumpC + thermal.converterW / circuit.loopState.oilCapacityRate
   thermal.rates(temperatures, rates)
-  return [rates[SUMP]!, rates[COOLANT]!]
 }
 
 /** Newton on the slow pair; undefined when it does not close or ends where a nudge would grow. */
@@ -37,22 +39,23 @@ function newton(
   thermal: ThermalPoint,
   fromSumpC: number,
   fromCoolantC: number,
-): [number, number] | undefined {
+): [sumpC: number, coolantC: number] | undefined {
   let sumpC = fromSumpC
   let coolantC = fromCoolantC
   for (let iteration = 0; iteration < NEWTON_STEPS; iteration++) {
-    const [f, g] = slowRates(thermal, sumpC, coolantC)
-    const [fs, gs] = slowRates(thermal, sumpC + PERTURBATION_K, coolantC)
-    const [fc, gc] = slowRates(thermal, sumpC, coolantC + PERTURBATION_K)
-    const a = (fs - f) / PERTURBATION_K
-    const b = (fc - f) / PERTURBATION_K
-    const c = (gs - g) / PERTURBATION_K
-    const d = (gc - g) / PERTURBATION_K
+    fillSlowRates(thermal, sumpC, coolantC)
+    thermal.jacobian(temperatures, rates, slopes)
+    const converterWay = -slopes[4]! / slopes[5]!
+    const a = slopes[0]! + slopes[1]! * converterWay - (slopes[2]! * slopes[8]!) / slopes[10]!
+    const b = slopes[3]!
+    const c = slopes[12]! + slopes[13]! * converterWay
+    const d = slopes[15]!
+    const [f, g] = [rates[SUMP]!, rates[COOLANT]!]
     const determinant = a * d - b * c
     let stepSump = (b * g - d * f) / determinant
     let stepCoolant = (c * f - a * g) / determinant
-    if (d === 0 && c === 0 && a < 0) {
-      // thermostat shut and no tank: the coolant only warms; push it to where the thermostat answers
+    if (d === 0 && a < 0) {
+      // thermostat shut: the coolant only warms; push it to where the thermostat answers
       stepSump = -f / a
       stepCoolant = Math.sign(g) * LONGEST_STEP_K
     }
@@ -61,26 +64,38 @@ function newton(
     const share = Math.min(1, LONGEST_STEP_K / size)
     sumpC += share * stepSump
     coolantC += share * stepCoolant
-    if (size < CLOSE_K * (1 + Math.abs(sumpC) + Math.abs(coolantC))) {
-      const settles = a + d < 0 && determinant > 0
-      return settles ? [sumpC, coolantC] : undefined
-    }
+    if (size < CLOSE_K * (1 + Math.abs(sumpC) + Math.abs(coolantC)))
+      return a + d < 0 && determinant > 0 ? [sumpC, coolantC] : undefined
   }
   return undefined
 }
 
-/** Whether sump and coolant keep moving toward an end on the straight way to it: no other resting place lies between. */
-function isNextRest(
-  thermal: ThermalPoint,
-  from: ArrayLike<number>,
-  sumpC: number,
-  coolantC: number,
-): boolean {
-  const [sumpWay, coolantWay] = [sumpC - from[SUMP]!, coolantC - from[COOLANT]!]
-  if (Math.abs(sumpWay) < 1) return true
-  for (const share of [0.3, 0.65, 0.9]) {
-    const [sumpRate] = slowRates(thermal, from[SUMP]! + share * sumpWay, from[COOLANT]! + share * coolantWay)
-    if (sumpRate * sumpWay < 0) return false
+/** Coolant at rest beside a sump temperature; undefined where Newton does not close. */
+function restingCoolant(thermal: ThermalPoint, sumpC: number, guessC: number): number | undefined {
+  let coolantC = guessC
+  for (let iteration = 0; iteration < COOLANT_STEPS; iteration++) {
+    fillSlowRates(thermal, sumpC, coolantC)
+    thermal.jacobian(temperatures, rates, slopes)
+    const step =
+      slopes[15]! < 0 ? -rates[COOLANT]! / slopes[15]! : Math.sign(rates[COOLANT]!) * LONGEST_STEP_K
+    if (Math.abs(step) < COOLANT_CLOSE_K) return coolantC
+    coolantC += Math.min(LONGEST_STEP_K, Math.max(-LONGEST_STEP_K, step))
+  }
+  return undefined
+}
+
+/**
+ * Whether the sump, with the coolant at rest beside it, keeps moving toward an end all the way from a start: no other
+ * resting place lies between.
+ */
+function isNextRest(thermal: ThermalPoint, fromSumpC: number, sumpC: number, coolantC: number): boolean {
+  const way = sumpC - fromSumpC
+  if (Math.abs(way) < 1) return true
+  let guess = coolantC
+  for (const share of [0.9, 0.6, 0.3, 0.05]) {
+    const resting = restingCoolant(thermal, fromSumpC + share * way, guess)
+    if (resting === undefined || rates[SUMP]! * way < 0) return false
+    guess = resting
   }
   return true
 }
@@ -88,9 +103,8 @@ function isNextRest(
 /** Follows the truck itself until nothing moves. */
 function settleByTime(thermal: ThermalPoint, from: ArrayLike<number>): [number, number] {
   const state = Float64Array.from(from)
-  const advance = (at: Float64Array, into: Float64Array) => thermal.rates(at, into)
   for (let span = FIRST_SPAN_S; span < LONGEST_SPAN_S; span *= 4) {
-    integrate(advance, state, span, () => undefined, 0.05)
+    integrate(thermal, state, span, () => undefined, 0.05)
     const polished = newton(thermal, state[SUMP]!, state[COOLANT]!)
     if (
       polished !== undefined &&
@@ -120,7 +134,8 @@ export function equilibriumOf(
   guess: ArrayLike<number> = from,
 ): Float64Array {
   let pair = newton(thermal, guess[SUMP]!, guess[COOLANT]!)
-  if (pair === undefined || !isNextRest(thermal, from, pair[0], pair[1])) pair = settleByTime(thermal, from)
-  slowRates(thermal, pair[0], pair[1])
+  if (pair === undefined || !isNextRest(thermal, from[SUMP]!, pair[0], pair[1]))
+    pair = settleByTime(thermal, from)
+  fillSlowRates(thermal, pair[0], pair[1])
   return Float64Array.from(temperatures)
 }

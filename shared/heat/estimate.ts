@@ -100,8 +100,7 @@ function driveSegment(
   tally.peakCoolerInletC = temperatures[CONVERTER]!
   const intervals = output === null ? 0 : Math.max(1, Math.ceil(run.durationS / output.stepS - 1e-9))
   let next = 1
-  const rates = (at: Float64Array, into: Float64Array) => thermal.rates(at, into)
-  integrate(rates, temperatures, run.durationS, (step) => {
+  integrate(thermal, temperatures, run.durationS, (step) => {
     tallyStep(tally, life, step)
     if (output === null) return
     const endS = step.timeS + step.lengthS
@@ -204,13 +203,12 @@ export function peaksOfDuty(
 ): { sumpC: number; coolerInletC: number } {
   const temperatures = startTemperatures(truck.resolved.start)
   const thermal = makeThermal(truck)
-  const rates = (at: Float64Array, into: Float64Array) => thermal.rates(at, into)
   const peaks = { sumpC: -Infinity, coolerInletC: -Infinity }
   segments.forEach((segment, index) => {
     thermal.set(points[index]!)
     peaks.sumpC = Math.max(peaks.sumpC, temperatures[SUMP]!)
     peaks.coolerInletC = Math.max(peaks.coolerInletC, temperatures[CONVERTER]!)
-    integrate(rates, temperatures, segmentDuration(segment, points[index]!), (step) => {
+    integrate(thermal, temperatures, segmentDuration(segment, points[index]!), (step) => {
       peaks.sumpC = Math.max(peaks.sumpC, peakOnStep(step, SUMP))
       peaks.coolerInletC = Math.max(peaks.coolerInletC, peakOnStep(step, CONVERTER))
     })

@@ -11,6 +11,18 @@ import { COUPLED } from './balances'
 
 export type Rates = (temperatures: Float64Array, rates: Float64Array) => void
 
+/** Rates with slopes of their own; without, the integrator takes differences. */
+export interface StiffSystem {
+  rates: Rates
+  /** Slopes of the rates [1/s], row by row, at temperatures whose rates were just asked. */
+  jacobian(temperatures: Float64Array, rates: Float64Array, slopes: Float64Array): void
+}
+
+/** A system whose slopes are differences of its rates. */
+function differenced(rates: Rates): StiffSystem {
+  return { rates, jacobian: (at, atRates, slopes) => fillByDifferences(rates, at, atRates, slopes) }
+}
+
 /** One finished step: ends, rates at both ends, and its place in time. */
 export interface StepRecord {
   timeS: number
@@ -38,7 +50,12 @@ const probe = new Float64Array(n)
 const probeRates = new Float64Array(n)
 const right = new Float64Array(n)
 
-function fillJacobian(rates: Rates, at: Float64Array, atRates: Float64Array): void {
+function fillByDifferences(
+  rates: Rates,
+  at: Float64Array,
+  atRates: Float64Array,
+  slopes: Float64Array,
+): void {
   probe.set(at)
   for (let column = 0; column < n; column++) {
     const kept = probe[column]!
@@ -46,7 +63,7 @@ function fillJacobian(rates: Rates, at: Float64Array, atRates: Float64Array): vo
     rates(probe, probeRates)
     probe[column] = kept
     for (let row = 0; row < n; row++)
-      jacobian[row * n + column] = (probeRates[row]! - atRates[row]!) / PERTURBATION_K
+      slopes[row * n + column] = (probeRates[row]! - atRates[row]!) / PERTURBATION_K
   }
 }
 
@@ -93,7 +110,7 @@ function backSubstitute(b: Float64Array): void {
 
 /** One trial step of RODAS3; leaves the new temperatures in `to` and returns the error estimate [K]. */
 function trialStep(
-  rates: Rates,
+  system: StiffSystem,
   from: Float64Array,
   fromRates: Float64Array,
   h: number,
@@ -109,11 +126,11 @@ function trialStep(
   for (let i = 0; i < n; i++) k2[i] = fromRates[i]! + (4 / h) * k1[i]!
   backSubstitute(k2)
   for (let i = 0; i < n; i++) to[i] = from[i]! + 2 * k1[i]!
-  rates(to, right)
+  system.rates(to, right)
   for (let i = 0; i < n; i++) k3[i] = right[i]! + (k1[i]! - k2[i]!) / h
   backSubstitute(k3)
   for (let i = 0; i < n; i++) to[i] = to[i]! + k3[i]!
-  rates(to, right)
+  system.rates(to, right)
   for (let i = 0; i < n; i++) k4[i] = right[i]! + (k1[i]! - k2[i]! - (8 / 3) * k3[i]!) / h
   backSubstitute(k4)
   let error = 0
@@ -126,7 +143,7 @@ function trialStep(
 
 /**
  * Integrates from a start over a duration and hands every accepted step to a visitor.
- * @param rates - temperature rates [K/s]; does not depend on time
+ * @param given - temperature rates [K/s], which do not depend on time, with or without their slopes
  * @param start - temperatures at the start [°C]; becomes those at the end
  * @param durationS - [s]
  * @param visit - sees each accepted step; the record is used again for the next
@@ -134,7 +151,7 @@ function trialStep(
  * @returns number of steps taken
  */
 export function integrate(
-  rates: Rates,
+  given: Rates | StiffSystem,
   start: Float64Array,
   durationS: number,
   visit: (step: StepRecord) => void,
@@ -148,17 +165,18 @@ export function integrate(
     fromRates: new Float64Array(n),
     toRates: new Float64Array(n),
   }
-  rates(record.from, record.fromRates)
+  const system = typeof given === 'function' ? differenced(given) : given
+  system.rates(record.from, record.fromRates)
   let h = Math.min(FIRST_STEP_S, durationS)
   let steps = 0
   let rejected = false
-  fillJacobian(rates, record.from, record.fromRates)
+  system.jacobian(record.from, record.fromRates, jacobian)
   while (record.timeS < durationS) {
     const allowed = tolerance * 10 ** Math.floor(steps / PATIENCE_STEPS)
     const left = durationS - record.timeS
     if (h > 0.999999 * left) h = left
     else if (h > 0.5 * left) h = 0.5 * left
-    const error = trialStep(rates, record.from, record.fromRates, h, record.to)
+    const error = trialStep(system, record.from, record.fromRates, h, record.to)
     steps++
     const growth = 0.9 * Math.cbrt(allowed / Math.max(error, 1e-12))
     if (error > allowed && h > SHORTEST_STEP_S) {
@@ -166,10 +184,12 @@ export function integrate(
       rejected = true
       continue
     }
-    rates(record.to, record.toRates)
+    system.rates(record.to, record.toRates)
+    const isLast = h === left
+    if (!isLast) system.jacobian(record.to, record.toRates, jacobian)
     record.lengthS = h
     visit(record)
-    record.timeS = h === left ? durationS : record.timeS + h
+    record.timeS = isLast ? durationS : record.timeS + h
     const { from, fromRates } = record
     record.from = record.to
     record.fromRates = record.toRates
@@ -177,7 +197,6 @@ export function integrate(
     record.toRates = fromRates
     h *= Math.min(rejected ? 1 : 6, Math.max(0.3, growth))
     rejected = false
-    if (record.timeS < durationS) fillJacobian(rates, record.from, record.fromRates)
   }
   start.set(record.from)
   return steps

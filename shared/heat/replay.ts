@@ -176,7 +176,6 @@ const ahead = new Float64Array(COUPLED)
  * Source: K. Heun (1900); E. Hairer, S. Nørsett & G. Wanner, Solving Ordinary Differential Equations I, II.1.
  */
 function advance(thermal: ThermalPoint, temperatures: Float64Array, lengthS: number): void {
-  const rates = (at: Float64Array, into: Float64Array) => thermal.rates(at, into)
   if (lengthS <= LONGEST_EXPLICIT_S) {
     thermal.rates(temperatures, first)
     for (let k = 0; k < COUPLED; k++) ahead[k] = temperatures[k]! + lengthS * first[k]!
@@ -193,7 +192,7 @@ function advance(thermal: ThermalPoint, temperatures: Float64Array, lengthS: num
       return
     }
   }
-  integrate(rates, temperatures, lengthS, () => undefined)
+  integrate(thermal, temperatures, lengthS, () => undefined)
 }
 
 /** What the log says beside speed and grade between sample `index` and the next. */

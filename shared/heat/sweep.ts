@@ -55,8 +55,7 @@ export class GradeRunner {
       this.guess = temperatures
     } else {
       temperatures = Float64Array.from(this.start)
-      const rates = (at: Float64Array, into: Float64Array) => thermal.rates(at, into)
-      integrate(rates, temperatures, this.climb.distanceM / point.speedMps, () => undefined)
+      integrate(thermal, temperatures, this.climb.distanceM / point.speedMps, () => undefined)
     }
     thermal.circuit.readLoop(temperatures[SUMP]!)
     return {
