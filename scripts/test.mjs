@@ -59,6 +59,16 @@ async function prepare(dependents, work) {
   }
 }
 
+/**
+ * Runs steps one after the other and counts what they come to.
+ *
+ * @param {readonly import('./lib/checks.mjs').StepName[]} names
+ * @param {{ filters: readonly string[], env?: NodeJS.ProcessEnv }} options
+ */
+async function runAll(names, options) {
+  for (const name of names) tallies.push(await runStep(name, { root, progress, ...options }))
+}
+
 async function test() {
   const { steps, filters } = parseTestArguments(process.argv.slice(2))
   let open = [...steps]
@@ -74,25 +84,24 @@ async function test() {
   })
   if (!hasPackages) return
   if (among(['unit']).length > 0) await offerUnits()
-  // Those without a need for servers first: the quick answers come early.
-  for (const name of open.filter((step) => !CLUSTER_STEPS.includes(step))) {
-    tallies.push(await runStep(name, { root, progress, filters }))
-  }
+  // Those without a need for servers first: the quick answers come early. The type check takes as long as the other
+  // checks together, and one core.
+  const lanes = [among(['types']), among(['format', 'lint', 'unused'])]
+  await Promise.all(lanes.map((lane) => runAll(lane, { filters })))
+  await runAll(among(['unit', 'nuxt']), { filters })
 
   const env = { ...process.env, LONGPULL_TEST_BUILT: '1' }
   const onCluster = among(CLUSTER_STEPS)
   if (!(await prepare(onCluster, () => openCluster(env)))) giveUp(CLUSTER_STEPS)
-  if (among(['db']).length > 0) tallies.push(await runStep('db', { root, progress, filters, env }))
+  if (among(['db']).length > 0) await runAll(['db'], { filters, env })
 
   const onBuild = among(BUILD_STEPS)
   if (!(await prepare(onBuild, async () => void (await ensureBuild({ root, progress }))))) giveUp(BUILD_STEPS)
-  if (among(['api']).length > 0) tallies.push(await runStep('api', { root, progress, filters, env }))
+  if (among(['api']).length > 0) await runAll(['api'], { filters, env })
 
   const onBrowser = among(BROWSER_STEPS)
   if (!(await prepare(onBrowser, ensureChromium))) giveUp(BROWSER_STEPS)
-  for (const name of among(BROWSER_STEPS)) {
-    tallies.push(await runStep(name, { root, progress, filters, env }))
-  }
+  await runAll(among(BROWSER_STEPS), { filters, env })
 }
 
 /** The types and settings that checks and tests read are made from the sources: made anew, they are never stale. */

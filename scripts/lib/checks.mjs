@@ -113,7 +113,7 @@ async function runProject(name, { root, progress, filters = [], env = process.en
       }),
     )
     const tally = tallyReport(existsSync(report) ? readFileSync(report, 'utf8') : undefined, code)
-    progress.say(`  ${PROJECTS[name]}: ${tally.passed} passed, ${tally.failed} failed`)
+    progress.say(`${PROJECTS[name]}: ${tally.passed} passed, ${tally.failed} failed`)
     return tally
   } finally {
     rmSync(report, { force: true })

@@ -50,23 +50,20 @@ export function matchesLock(wantedText, installedText) {
  */
 export async function ensurePackages({ root, progress }) {
   if (isInstallCurrent(root)) return
-  await progress.step(
-    'Installing the packages (npm ci; the first time takes a minute or two)',
-    async (report) => {
-      // npm itself says nothing until it is through.
-      const count = setInterval(() => report(`${countPackages(root)} packages are there`), 2000)
-      try {
-        await run({
-          ...npm(['ci', '--include=dev', '--no-audit', '--no-fund']),
-          cwd: root,
-          onLine: report,
-          leashed: true,
-        })
-      } finally {
-        clearInterval(count)
-      }
-    },
-  )
+  await progress.step('Installing the packages (npm ci, a minute or two)', async (report) => {
+    // npm itself says nothing until it is through.
+    const count = setInterval(() => report(`${countPackages(root)} packages are there`), 2000)
+    try {
+      await run({
+        ...npm(['ci', '--include=dev', '--no-audit', '--no-fund']),
+        cwd: root,
+        onLine: report,
+        leashed: true,
+      })
+    } finally {
+      clearInterval(count)
+    }
+  })
 }
 
 /** @param {string} root */

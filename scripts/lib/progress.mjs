@@ -30,7 +30,7 @@ export function createProgress(options = {}) {
     let latest = ''
     say(`${title} …`)
     const heartbeat = setInterval(
-      () => say(`  still at it after ${seconds()}${latest === '' ? '' : `: ${latest}`}`),
+      () => say(`${title}: still at it after ${seconds()}${latest === '' ? '' : `: ${latest}`}`),
       heartbeatMs,
     )
     try {
@@ -38,10 +38,10 @@ export function createProgress(options = {}) {
         const text = cleanLine(line)
         if (text !== '') latest = text
       })
-      say(`  done in ${seconds()}`)
+      say(`${title}: done in ${seconds()}`)
       return result
     } catch (error) {
-      say(`  failed after ${seconds()}`)
+      say(`${title}: failed after ${seconds()}`)
       throw error
     } finally {
       clearInterval(heartbeat)

@@ -17,9 +17,9 @@ describe('the progress lines', () => {
     expect(await step).toBe('built')
     expect(lines).toEqual([
       '[   0.0 s] Building …',
-      '[  10.0 s]   still at it after 10.0 s: module 1 of 3',
-      '[  20.0 s]   still at it after 20.0 s: module 1 of 3',
-      '[  25.0 s]   done in 25.0 s',
+      '[  10.0 s] Building: still at it after 10.0 s: module 1 of 3',
+      '[  20.0 s] Building: still at it after 20.0 s: module 1 of 3',
+      '[  25.0 s] Building: done in 25.0 s',
     ])
   })
 
@@ -28,7 +28,7 @@ describe('the progress lines', () => {
     const progress = createProgress({ write: (line) => void lines.push(line), now: () => Date.now() })
     await expect(progress.step('Trying', () => Promise.reject(new Error('no')))).rejects.toThrow('no')
     await vi.advanceTimersByTimeAsync(60_000)
-    expect(lines).toEqual(['[   0.0 s] Trying …', '[   0.0 s]   failed after 0.0 s'])
+    expect(lines).toEqual(['[   0.0 s] Trying …', '[   0.0 s] Trying: failed after 0.0 s'])
   })
 
   it('makes a program’s line fit', () => {
