@@ -1,6 +1,8 @@
 import { defineStore } from 'pinia'
 import { useApi } from '~/composables/use-api'
 import { ApiError } from '~/utils/api-error'
+import { isAllowed } from '#shared/permissions'
+import type { Action } from '#shared/permissions'
 import type { Me, MeUpdate, SignIn } from '#shared/schemas/auth'
 import type { UnitSystem } from '#shared/units/display'
 
@@ -36,6 +38,9 @@ export const useSessionStore = defineStore('session', () => {
       unreachable.value = !(error instanceof ApiError && error.status === 401)
     }
   }
+
+  /** Whether the person's role includes an action, for showing what can be done. The server decides by the same table. */
+  const may = (action: Action): boolean => me.value !== null && isAllowed(me.value.role, action)
 
   /** Signs in, and brings the person's units and theme along. Throws an ApiError when it cannot. */
   async function signIn(credentials: SignIn): Promise<void> {
@@ -79,5 +84,5 @@ export const useSessionStore = defineStore('session', () => {
     for (const resolve of waiting.splice(0)) resolve(signedIn)
   }
 
-  return { me, asking, unreachable, unitsChoice, load, signIn, signOut, remember, askForSignIn, settle }
+  return { me, asking, unreachable, unitsChoice, may, load, signIn, signOut, remember, askForSignIn, settle }
 })
