@@ -108,7 +108,10 @@ export class ThermalPoint {
   }
 
   private loneBody(heatW: number, conductance: number, heatCapacityJK: number): LoneBody {
-    return { endC: this.underbodyC + heatW / conductance, timeS: heatCapacityJK / conductance }
+    return {
+      endC: this.underbodyC + heatW / conductance,
+      timeS: heatCapacityJK / conductance,
+    }
   }
 
   /** Temperature rates [K/s] of the four coupled temperatures. */

@@ -15,9 +15,8 @@ import type { LoopSource, LoopState } from './loop-flow'
 
 /** Coolant flow rises with engine speed up to this multiple of its rating. Judgement. */
 const LARGEST_COOLANT_FACTOR = 1.5
-/** Split of the radiator's thermal resistance and its exponents: air 0.8 (^-0.5), coolant 0.2 (^-0.8). Judgement. */
+/** Split of the radiator's thermal resistance and its exponents: air 0.8 (to the -0.5), coolant 0.2 (to the -0.8). Judgement. */
 const RADIATOR_AIR_SHARE = 0.8
-const RADIATOR_AIR_EXPONENT = 0.5
 const RADIATOR_COOLANT_EXPONENT = 0.8
 /** Step of temperature in the slopes [K]. */
 const NUDGE_K = 1e-3
@@ -81,7 +80,12 @@ export class Circuit {
   private readonly oilRate: Float64Array
   private coolantPower = 1
   private radiatorUa = 0
-  private readonly radiator: ExchangerConductance = { conductance: 0, overUa: 0, overRateA: 0, overRateB: 0 }
+  private readonly radiator: ExchangerConductance = {
+    conductance: 0,
+    overUa: 0,
+    overRateA: 0,
+    overRateB: 0,
+  }
   private readonly exchangers: ExchangerConductance[]
   private keptSumpC = NaN
   private usedSumpC = NaN
@@ -103,7 +107,12 @@ export class Circuit {
     this.oilTerm = new Float64Array(this.count)
     this.ua = new Float64Array(this.count)
     this.oilRate = new Float64Array(this.count)
-    this.exchangers = coolers.map(() => ({ conductance: 0, overUa: 0, overRateA: 0, overRateB: 0 }))
+    this.exchangers = coolers.map(() => ({
+      conductance: 0,
+      overUa: 0,
+      overRateA: 0,
+      overRateB: 0,
+    }))
     const isTank = Uint8Array.from(coolers, (cooler) => (cooler.position === 'radiator-tank' ? 1 : 0))
     const inStack = Uint8Array.from(coolers, (cooler) => (cooler.inStack ? 1 : 0))
     const opensGroup = new Uint8Array(this.count)

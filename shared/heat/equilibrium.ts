@@ -4,7 +4,8 @@ import { integrate } from './integrator'
 
 /** Where a segment would settle if it never ended. */
 
-const CLOSE_K = 1e-9
+/** Newton squares its error: after a step this small the next would be about 1e-10 K. */
+const CLOSE_K = 1e-5
 const LONGEST_STEP_K = 25
 const NEWTON_STEPS = 30
 /** How near the coolant must come to rest for a look at the sump [K], and how long it may take. */
@@ -64,8 +65,7 @@ function newton(
     const share = Math.min(1, LONGEST_STEP_K / size)
     sumpC += share * stepSump
     coolantC += share * stepCoolant
-    if (size < CLOSE_K * (1 + Math.abs(sumpC) + Math.abs(coolantC)))
-      return a + d < 0 && determinant > 0 ? [sumpC, coolantC] : undefined
+    if (size < CLOSE_K) return a + d < 0 && determinant > 0 ? [sumpC, coolantC] : undefined
   }
   return undefined
 }
@@ -92,7 +92,7 @@ function isNextRest(thermal: ThermalPoint, fromSumpC: number, sumpC: number, coo
   const way = sumpC - fromSumpC
   if (Math.abs(way) < 1) return true
   let guess = coolantC
-  for (const share of [0.9, 0.6, 0.3, 0.05]) {
+  for (const share of [0.8, 0.4, 0.05]) {
     const resting = restingCoolant(thermal, fromSumpC + share * way, guess)
     if (resting === undefined || rates[SUMP]! * way < 0) return false
     guess = resting

@@ -16,7 +16,7 @@ const FASTEST_DOUBLINGS = 500
  */
 export function ageingFactor(life: ResolvedFluidLife, oilC: number): number {
   const above = oilC - life.referenceC
-  return above <= 0 ? 1 : 2 ** Math.min(FASTEST_DOUBLINGS, above / life.halvingK)
+  return above <= 0 ? 1 : Math.exp(Math.LN2 * Math.min(FASTEST_DOUBLINGS, above / life.halvingK))
 }
 
 /** Share of the fluid's life used per second at the reference temperature [1/s]. */

@@ -47,7 +47,11 @@ export function makeOil(fluid: Fluid): Oil {
       ? FLUIDS[fluid.class]
       : [fluid.kv40MmSqS ?? NaN, fluid.kv100MmSqS ?? NaN, fluid.density15KgM3 ?? NaN]
   const viscosityB = (doubleLog(kv40) - doubleLog(kv100)) / (log100 - log40)
-  return { viscosityA: doubleLog(kv40) + viscosityB * log40, viscosityB, density15KgM3 }
+  return {
+    viscosityA: doubleLog(kv40) + viscosityB * log40,
+    viscosityB,
+    density15KgM3,
+  }
 }
 
 /** The viscosity line of `kinematicViscosity` without its cold floor, for tables that must be smooth across it. */

@@ -21,14 +21,31 @@ export function churchill(reynolds: number, relativeRoughness: number): { factor
   const inner = Math.exp(0.9 * Math.log(7 / reynolds))
   const argument = inner + 0.27 * relativeRoughness
   const logarithm = -Math.log(argument)
-  const a = Math.abs(2.457 * logarithm) ** 16
-  const b = (37530 / reynolds) ** 16
-  const laminar = (8 / reynolds) ** 12
-  const turbulent = (a + b) ** -1.5
+  const a = toSixteenth(2.457 * logarithm)
+  const b = toSixteenth(37530 / reynolds)
+  const ab = a + b
+  const laminar = toTwelfth(8 / reynolds)
+  const turbulent = 1 / (ab * Math.sqrt(ab))
   const sum = laminar + turbulent
   const slopeA = logarithm === 0 ? 0 : (16 * a * 0.9 * inner) / (argument * logarithm)
-  const slopeSum = -12 * laminar - (1.5 * turbulent * (slopeA - 16 * b)) / (a + b)
-  return { factor: 8 * sum ** (1 / 12), slope: slopeSum / (12 * sum) }
+  const slopeSum = -12 * laminar - (1.5 * turbulent * (slopeA - 16 * b)) / ab
+  return {
+    factor: 8 * Math.exp(Math.log(sum) / 12),
+    slope: slopeSum / (12 * sum),
+  }
+}
+
+function toTwelfth(x: number): number {
+  const third = x * x * x
+  const sixth = third * third
+  return sixth * sixth
+}
+
+function toSixteenth(x: number): number {
+  const second = x * x
+  const fourth = second * second
+  const eighth = fourth * fourth
+  return eighth * eighth
 }
 
 export interface Line {
@@ -53,7 +70,10 @@ export function lineDrop(
   const friction = ((factor * line.lengthM) / line.innerDiameterM) * dynamic
   const minor = line.fittingsK * dynamic
   const dropPa = friction + minor
-  return { dropPa, slope: dropPa > 0 ? (friction * (2 + slope) + 2 * minor) / dropPa : 2 }
+  return {
+    dropPa,
+    slope: dropPa > 0 ? (friction * (2 + slope) + 2 * minor) / dropPa : 2,
+  }
 }
 
 /**

@@ -249,7 +249,13 @@ export function coastingState(
   const { ratio } = powertrain.gears[topGear - 1]!
   const turbineSpeed = (speedMps / powertrain.tyreRadiusM) * powertrain.axleRatio * range.ratio * ratio
   const impellerSpeed = Math.max(powertrain.idleSpeed, turbineSpeed)
-  const still = { speedMps, outputTorque: 0, outputSpeed: 0, axleW: 0, transferCaseW: 0 }
+  const still = {
+    speedMps,
+    outputTorque: 0,
+    outputSpeed: 0,
+    axleW: 0,
+    transferCaseW: 0,
+  }
   return makeState(powertrain, still, topGear, false, turbineSpeed, impellerSpeed, 0, 0)
 }
 
@@ -260,7 +266,16 @@ export function coastingState(
  */
 export function brakedState(powertrain: Powertrain, impellerSpeed: number): DriveState {
   const torque = powertrain.converter.stallCapacity * impellerSpeed * impellerSpeed
-  const still = { speedMps: 0, outputTorque: 0, outputSpeed: 0, axleW: 0, transferCaseW: 0 }
+  const still = {
+    speedMps: 0,
+    outputTorque: 0,
+    outputSpeed: 0,
+    axleW: 0,
+    transferCaseW: 0,
+  }
   const state = makeState(powertrain, still, 1, false, 0, impellerSpeed, torque, 0)
-  return { ...state, turbineTorque: torque * powertrain.converter.stallTorqueRatio }
+  return {
+    ...state,
+    turbineTorque: torque * powertrain.converter.stallTorqueRatio,
+  }
 }

@@ -1,4 +1,4 @@
-import { COUPLED } from './balances'
+import { CASE, CONVERTER, COOLANT, COUPLED, SUMP } from './balances'
 
 /**
  * Integrates the four coupled temperatures: a linearly implicit method of order 3 with step control, which stays stable
@@ -20,7 +20,10 @@ export interface StiffSystem {
 
 /** A system whose slopes are differences of its rates. */
 function differenced(rates: Rates): StiffSystem {
-  return { rates, jacobian: (at, atRates, slopes) => fillByDifferences(rates, at, atRates, slopes) }
+  return {
+    rates,
+    jacobian: (at, atRates, slopes) => fillByDifferences(rates, at, atRates, slopes),
+  }
 }
 
 /** One finished step: ends, rates at both ends, and its place in time. */
@@ -67,8 +70,77 @@ function fillByDifferences(
   }
 }
 
+/**
+ * The matrix of a step, d I - J, ready to be solved. Converter and case meet the sump only, which leaves two equations
+ * for sump and coolant; a system in which they meet more is factored whole.
+ */
+const arrow = {
+  fits: true,
+  converterPivot: 1,
+  casePivot: 1,
+  converterFromSump: 0,
+  caseFromSump: 0,
+  sumpFromConverter: 0,
+  sumpFromCase: 0,
+  coolantFromConverter: 0,
+  m00: 1,
+  m03: 0,
+  m30: 0,
+  m33: 1,
+  perDeterminant: 1,
+}
+
+function factor(diagonal: number): void {
+  const J = jacobian
+  const lone = J[6] === 0 && J[7] === 0 && J[9] === 0 && J[11] === 0 && J[14] === 0
+  arrow.fits = lone && J[5]! < diagonal && J[10]! < diagonal
+  if (!arrow.fits) {
+    for (let index = 0; index < n * n; index++) matrix[index] = -J[index]!
+    for (let k = 0; k < n; k++) matrix[k * n + k]! += diagonal
+    factorWhole()
+    return
+  }
+  const converterPivot = 1 / (diagonal - J[5]!)
+  const casePivot = 1 / (diagonal - J[10]!)
+  const converterFromSump = J[4]! * converterPivot
+  const caseFromSump = J[8]! * casePivot
+  const m00 = diagonal - J[0]! - J[1]! * converterFromSump - J[2]! * caseFromSump
+  const m03 = -J[3]!
+  const m30 = -J[12]! - J[13]! * converterFromSump
+  const m33 = diagonal - J[15]!
+  arrow.converterPivot = converterPivot
+  arrow.casePivot = casePivot
+  arrow.converterFromSump = converterFromSump
+  arrow.caseFromSump = caseFromSump
+  arrow.sumpFromConverter = J[1]! * converterPivot
+  arrow.sumpFromCase = J[2]! * casePivot
+  arrow.coolantFromConverter = J[13]! * converterPivot
+  arrow.m00 = m00
+  arrow.m03 = m03
+  arrow.m30 = m30
+  arrow.m33 = m33
+  arrow.perDeterminant = 1 / (m00 * m33 - m03 * m30)
+}
+
+/** Solves with the factors; `b` becomes the answer. */
+function solveFactored(b: Float64Array): void {
+  if (!arrow.fits) {
+    solveWhole(b)
+    return
+  }
+  const b1 = b[CONVERTER]!
+  const b2 = b[CASE]!
+  const right0 = b[SUMP]! + arrow.sumpFromConverter * b1 + arrow.sumpFromCase * b2
+  const right3 = b[COOLANT]! + arrow.coolantFromConverter * b1
+  const sump = (right0 * arrow.m33 - arrow.m03 * right3) * arrow.perDeterminant
+  b[SUMP] = sump
+  b[CONVERTER] = b1 * arrow.converterPivot + arrow.converterFromSump * sump
+  b[CASE] = b2 * arrow.casePivot + arrow.caseFromSump * sump
+  b[COOLANT] = (arrow.m00 * right3 - arrow.m30 * right0) * arrow.perDeterminant
+}
+
 /** LU factors of the matrix in place, with row exchange. */
-function factor(): void {
+function factorWhole(): void {
   for (let k = 0; k < n; k++) {
     let pivot = k
     for (let row = k + 1; row < n; row++)
@@ -90,8 +162,8 @@ function factor(): void {
   }
 }
 
-/** Solves with the factors; `b` becomes the answer. */
-function backSubstitute(b: Float64Array): void {
+/** Solves with the LU factors; `b` becomes the answer. */
+function solveWhole(b: Float64Array): void {
   for (let k = 0; k < n; k++) {
     const pivot = pivots[k]!
     if (pivot !== k) {
@@ -116,23 +188,20 @@ function trialStep(
   h: number,
   to: Float64Array,
 ): number {
-  const diagonal = 2 / h
-  for (let index = 0; index < n * n; index++) matrix[index] = -jacobian[index]!
-  for (let k = 0; k < n; k++) matrix[k * n + k]! += diagonal
-  factor()
+  factor(2 / h)
   const [k1, k2, k3, k4] = stage as [Float64Array, Float64Array, Float64Array, Float64Array]
   k1.set(fromRates)
-  backSubstitute(k1)
+  solveFactored(k1)
   for (let i = 0; i < n; i++) k2[i] = fromRates[i]! + (4 / h) * k1[i]!
-  backSubstitute(k2)
+  solveFactored(k2)
   for (let i = 0; i < n; i++) to[i] = from[i]! + 2 * k1[i]!
   system.rates(to, right)
   for (let i = 0; i < n; i++) k3[i] = right[i]! + (k1[i]! - k2[i]!) / h
-  backSubstitute(k3)
+  solveFactored(k3)
   for (let i = 0; i < n; i++) to[i] = to[i]! + k3[i]!
   system.rates(to, right)
   for (let i = 0; i < n; i++) k4[i] = right[i]! + (k1[i]! - k2[i]! - (8 / 3) * k3[i]!) / h
-  backSubstitute(k4)
+  solveFactored(k4)
   let error = 0
   for (let i = 0; i < n; i++) {
     to[i]! += k4[i]!

@@ -131,7 +131,8 @@ export function solveLoopFlow(
     if (!(next >= low && next <= high)) next = 0.5 * (low + high)
     const moved = Math.abs(next - logFlow)
     logFlow = next
-    if (moved < 1e-11) break
+    // Newton squares the error: the next step would be about 1e-12
+    if (moved < 1e-6) break
   }
   return { volumeFlow: Math.exp(logFlow), shares }
 }
@@ -316,17 +317,15 @@ export class SharedLoopTables implements LoopSource {
     const weights = cubicWeights(position - base - 1)
     const { parts } = this
     for (let k = 0; k < 4; k++) this.table(base + k).read(sumpC, parts[k]!)
-    const blend = (pick: (part: LoopState) => number) =>
-      weights[0] * pick(parts[0]!) +
-      weights[1] * pick(parts[1]!) +
-      weights[2] * pick(parts[2]!) +
-      weights[3] * pick(parts[3]!)
-    state.volumeFlow = blend((part) => part.volumeFlow)
-    state.oilCapacityRate = blend((part) => part.oilCapacityRate)
-    state.spinFactor = parts[0]!.spinFactor
-    for (let index = 0; index < state.oilSide.length; index++) {
-      state.oilSide[index] = blend((part) => part.oilSide[index]!)
-      state.shares[index] = blend((part) => part.shares[index]!)
+    const [p0, p1, p2, p3] = parts as [LoopState, LoopState, LoopState, LoopState]
+    const [w0, w1, w2, w3] = weights
+    state.volumeFlow = w0 * p0.volumeFlow + w1 * p1.volumeFlow + w2 * p2.volumeFlow + w3 * p3.volumeFlow
+    state.oilCapacityRate =
+      w0 * p0.oilCapacityRate + w1 * p1.oilCapacityRate + w2 * p2.oilCapacityRate + w3 * p3.oilCapacityRate
+    state.spinFactor = p0.spinFactor
+    for (let k = 0; k < state.oilSide.length; k++) {
+      state.oilSide[k] = w0 * p0.oilSide[k]! + w1 * p1.oilSide[k]! + w2 * p2.oilSide[k]! + w3 * p3.oilSide[k]!
+      state.shares[k] = w0 * p0.shares[k]! + w1 * p1.shares[k]! + w2 * p2.shares[k]! + w3 * p3.shares[k]!
     }
   }
 }

@@ -222,17 +222,26 @@ function addPhase(
   sums.transferCaseJ += timeS * state.transferCaseW
 }
 
-/** Fastest acceleration up to the one asked for that some gear holds at a speed; undefined under the weakest. */
-function possibleAcceleration(
+/** Acceleration and state of one pull-away bin. */
+interface PullAway {
+  acceleration: number
+  state: DriveState
+}
+
+/** The acceleration asked for, or the largest some gear holds at a speed; undefined under the weakest. */
+function pullAway(
   powertrain: Powertrain,
   road: RoadPoint,
   speedMps: number,
   asked: number,
-): number | undefined {
+): PullAway | undefined {
+  const full = stateAt(powertrain, road, speedMps, asked, PULL_AWAY_CALM_SHARE)
+  if (full !== undefined) return { acceleration: asked, state: full }
   const passes = (acceleration: number) => isHeld(powertrain, road, speedMps, acceleration)
-  if (passes(asked)) return asked
   if (!passes(WEAKEST_ACCELERATION_MPS2)) return undefined
-  return bisect(WEAKEST_ACCELERATION_MPS2, asked, passes)
+  const acceleration = bisect(WEAKEST_ACCELERATION_MPS2, asked, passes)
+  const state = stateAt(powertrain, road, speedMps, acceleration, PULL_AWAY_CALM_SHARE)
+  return state === undefined ? undefined : { acceleration, state }
 }
 
 /**
@@ -263,12 +272,8 @@ function addPullAway(
   let previousGear: number | undefined
   for (let bin = 0; bin < PULL_AWAY_BINS; bin++) {
     const speed = (bin + 0.5) * width
-    const acceleration = possibleAcceleration(powertrain, road, speed, asked)
-    const state =
-      acceleration === undefined
-        ? undefined
-        : stateAt(powertrain, road, speed, acceleration, PULL_AWAY_CALM_SHARE)
-    if (acceleration === undefined || state === undefined)
+    const pulled = pullAway(powertrain, road, speed, asked)
+    if (pulled === undefined)
       throw new AppError('cannot_pull_away', {
         issues: [
           {
@@ -277,7 +282,8 @@ function addPullAway(
           },
         ],
       })
-    addPhase(sums, powertrain, state, width / acceleration, speed)
+    const { state } = pulled
+    addPhase(sums, powertrain, state, width / pulled.acceleration, speed)
     if (previousGear !== undefined && state.gear > previousGear) {
       const oldRatio = powertrain.gears[previousGear - 1]!.ratio
       const newRatio = powertrain.gears[state.gear - 1]!.ratio
@@ -317,7 +323,10 @@ function stopGoPoint(powertrain: Powertrain, segment: StopGoSegment, path: strin
   if (cruise === undefined)
     throw new AppError('cannot_hold_cruise', {
       issues: [
-        { path, message: `cannot hold ${topSpeed.toPrecision(3)} m/s between stops; try a lower speedMps` },
+        {
+          path,
+          message: `cannot hold ${topSpeed.toPrecision(3)} m/s between stops; try a lower speedMps`,
+        },
       ],
     })
   addPhase(sums, powertrain, cruise, Math.max(0, cycleM - sums.distanceM - coastM) / topSpeed, topSpeed)

@@ -29,7 +29,11 @@ function endSlope(h0: number, h1: number, m0: number, m1: number): number {
  */
 export function makePchip(x: ArrayLike<number>, y: ArrayLike<number>): Pchip {
   const n = x.length
-  const curve = { x: Float64Array.from(x), y: Float64Array.from(y), slope: new Float64Array(n) }
+  const curve = {
+    x: Float64Array.from(x),
+    y: Float64Array.from(y),
+    slope: new Float64Array(n),
+  }
   const h = (k: number) => curve.x[k + 1]! - curve.x[k]!
   const secant = (k: number) => (curve.y[k + 1]! - curve.y[k]!) / h(k)
   if (n === 2) {
@@ -68,17 +72,4 @@ export function pchipAt(curve: Pchip, at: number): number {
     u * u * ((1 + 2 * t) * y[k]! + t * h * slope[k]!) +
     t * t * ((3 - 2 * t) * y[k + 1]! - u * h * slope[k + 1]!)
   )
-}
-
-/** Slope of a PCHIP curve between its points; 0 outside. */
-export function pchipSlopeAt(curve: Pchip, at: number): number {
-  const { x, y, slope } = curve
-  const last = x.length - 1
-  if (at < x[0]! || at > x[last]!) return 0
-  let k = 0
-  while (k < last - 1 && at >= x[k + 1]!) k++
-  const h = x[k + 1]! - x[k]!
-  const t = (at - x[k]!) / h
-  const rise = y[k + 1]! - y[k]!
-  return (6 * t * (1 - t) * rise) / h + (1 - t) * (1 - 3 * t) * slope[k]! + t * (3 * t - 2) * slope[k + 1]!
 }

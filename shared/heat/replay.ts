@@ -36,6 +36,8 @@ const RUNNING_SHARE = 0.5
 const STEP_ERROR_K = 1e-3
 const STEP_STIFFNESS = 0.6
 const LONGEST_EXPLICIT_S = 10
+/** Change of the sump over which the oil loop may be taken as it was [K]. */
+const LOOP_KEPT_K = 0.1
 
 /** What the log says beside speed and grade; engine speed in rad/s. */
 interface Logged {
@@ -179,7 +181,8 @@ function advance(thermal: ThermalPoint, temperatures: Float64Array, lengthS: num
   if (lengthS <= LONGEST_EXPLICIT_S) {
     thermal.rates(temperatures, first)
     for (let k = 0; k < COUPLED; k++) ahead[k] = temperatures[k]! + lengthS * first[k]!
-    thermal.rates(ahead, second)
+    if (Math.abs(ahead[SUMP]! - temperatures[SUMP]!) < LOOP_KEPT_K) thermal.ratesWithLoopKept(ahead, second)
+    else thermal.rates(ahead, second)
     let fastest = 1e-9
     let change = 0
     for (let k = 0; k < COUPLED; k++) {
@@ -246,5 +249,9 @@ export function replay(request: ReplayRequest): Replay {
     thermal.set(point, tables)
     advance(thermal, temperatures, lengthS)
   }
-  return { ...answer, forceLimitedSamples: counts.forceLimited, contradictedSamples: counts.contradicted }
+  return {
+    ...answer,
+    forceLimitedSamples: counts.forceLimited,
+    contradictedSamples: counts.contradicted,
+  }
 }

@@ -30,7 +30,11 @@ export const DEFAULTS = {
   slipRpm: 0,
   caseAreaM2: 0.7,
   shiftStyle: 'tow',
-  pump: { displacementM3PerRev: 20e-6, linePressureMinPa: 0.55e6, linePressureMaxPa: 1.5e6 },
+  pump: {
+    displacementM3PerRev: 20e-6,
+    linePressureMinPa: 0.55e6,
+    linePressureMaxPa: 1.5e6,
+  },
   transferCase: { surfaceM2: 0.4, heatCapacityJK: 25_000 },
   axle: { surfaceM2: 1.1, heatCapacityJK: 45_000 },
   coolantHeatRatio: { petrol: 0.95, diesel: 0.65 },
@@ -79,7 +83,12 @@ export interface Powertrain {
   idleSpeed: number
   redlineSpeed: number
   converter: Converter
-  lockup: { minGear: number; minSpeedMps: number; maxTurbineTorqueNm: number; slipSpeed: number } | null
+  lockup: {
+    minGear: number
+    minSpeedMps: number
+    maxTurbineTorqueNm: number
+    slipSpeed: number
+  } | null
   gears: readonly { ratio: number; efficiency: number }[]
   economy: boolean
   ratedTorqueNm: number
@@ -209,8 +218,14 @@ function resolvePowertrain(input: HeatInput, site: Site, pressurePa: number): Po
     ratedTorqueNm,
     pump,
     transferCase: {
-      high: { ratio: transferCase.highRatio, efficiency: transferCase.efficiencyHigh },
-      low: { ratio: transferCase.lowRatio, efficiency: transferCase.efficiencyLow },
+      high: {
+        ratio: transferCase.highRatio,
+        efficiency: transferCase.efficiencyHigh,
+      },
+      low: {
+        ratio: transferCase.lowRatio,
+        efficiency: transferCase.efficiencyLow,
+      },
     },
     axleRatio: build.axle.ratio,
     axleEfficiency: build.axle.efficiency,
@@ -230,7 +245,10 @@ function resolveMasses(build: Build): ThermalMasses {
     coolantHeatCapacityJK: cooling.coolantHeatCapacityJK ?? DEFAULTS.coolantHeatCapacityJK,
     coolantHeatRatio: engine.coolantHeatRatio ?? DEFAULTS.coolantHeatRatio[engine.fuel],
     axle: { ...DEFAULTS.axle, ...pickGiven(build.axle) },
-    transferCase: { ...DEFAULTS.transferCase, ...pickGiven(build.transferCase) },
+    transferCase: {
+      ...DEFAULTS.transferCase,
+      ...pickGiven(build.transferCase),
+    },
   }
 }
 

@@ -4,6 +4,7 @@ import { CONVERTER, SUMP } from './balances'
 import { withCoolers } from './cooling-system'
 import { equilibriumOf } from './equilibrium'
 import { peaksOfDuty } from './estimate'
+import type { LoopTable } from './loop-flow'
 import type { OperatingPoint } from './operating-point'
 import { LARGEST_CORE_M2, genericCooler, heatAtReferencePoint } from './reference-point'
 import { findRoot } from './roots'
@@ -15,9 +16,9 @@ import type { Sizing, TargetName } from './types'
 
 const TARGET_NAMES = ['sumpC', 'coolerInletC'] as const
 const SMALLEST_AREA_M2 = 1e-6
-const AREA_TOLERANCE_M2 = 1e-9
+const AREA_TOLERANCE_M2 = 2e-8
 /** Shares of the found area at which it is checked that nothing smaller holds. */
-const CHECK_SHARES = [0.25, 0.5, 0.8] as const
+const CHECK_SHARES = [0.35, 0.7] as const
 /** Areas looked at, as shares of the largest core, where the largest itself does not hold. */
 const SCAN_POINTS = 24
 
@@ -42,6 +43,7 @@ class CoolerTrial {
   private readonly truck: Truck
   private readonly points: OperatingPoint[]
   private readonly guesses: Float64Array[]
+  private readonly tables = new Map<number, LoopTable>()
 
   constructor(request: SizingRequest) {
     this.request = request
@@ -63,7 +65,10 @@ class CoolerTrial {
       faceAreaM2 === 0
         ? system.coolers
         : [...system.coolers, genericCooler(this.oil, construction, position, faceAreaM2)]
-    const truck = { resolved, system: withCoolers(resolved, system, coolers) }
+    const added = withCoolers(resolved, system, coolers)
+    // pressure drop and oil-side factors do not depend on the area, so neither do the loop's tables
+    if (faceAreaM2 > 0) added.tables = this.tables
+    const truck = { resolved, system: added }
     return excessOver(
       targets,
       basis === 'peak' ? peaksOfDuty(truck, input.duty.segments, this.points) : this.hottestRest(truck),
@@ -120,7 +125,12 @@ function smallestArea(excess: (area: number) => number, holding: number): number
 export function sizing(request: SizingRequest): Sizing {
   const trial = new CoolerTrial(request)
   if (worst(trial.excess(0)) <= 0) return { faceAreaM2: 0, heatW: 0, uaWK: 0 }
-  const excess = (area: number) => worst(trial.excess(area))
+  const known = new Map<number, number>()
+  const excess = (area: number) => {
+    const value = known.get(area) ?? worst(trial.excess(area))
+    known.set(area, value)
+    return value
+  }
   const holding = findHoldingArea(excess)
   if (holding === undefined) throw noSingleCooler(request, trial)
   const faceAreaM2 = smallestArea(excess, holding)

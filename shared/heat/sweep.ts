@@ -40,7 +40,13 @@ export class GradeRunner {
   drive(grade: number, path: string): OperatingPoint {
     return operatingPoint(
       this.truck.resolved.powertrain,
-      { ...this.segment, kind: 'steady', speedMps: this.speedMps, grade, durationS: 1 },
+      {
+        ...this.segment,
+        kind: 'steady',
+        speedMps: this.speedMps,
+        grade,
+        durationS: 1,
+      },
       path,
     )
   }
