@@ -92,7 +92,7 @@ async function runProject(name, { root, progress, filters = [], env = process.en
   mkdirSync(folder, { recursive: true })
   rmSync(report, { force: true })
   try {
-    const { code } = await progress.step(PROJECTS[name], () =>
+    const { code, timedOut } = await progress.step(PROJECTS[name], () =>
       run({
         command: process.execPath,
         args: [
@@ -109,9 +109,11 @@ async function runProject(name, { root, progress, filters = [], env = process.en
         leashed: true,
         show: true,
         mayFail: true,
-        timeoutMs: name === 'deep' ? 3_600_000 : 900_000,
+        timeoutMs: name === 'deep' ? 3_600_000 : 600_000,
       }),
     )
+    if (timedOut)
+      progress.say(`${PROJECTS[name]}: stopped, since they were not through in time; a test hangs`)
     const tally = tallyReport(existsSync(report) ? readFileSync(report, 'utf8') : undefined, code)
     progress.say(`${PROJECTS[name]}: ${tally.passed} passed, ${tally.failed} failed`)
     return tally

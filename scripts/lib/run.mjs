@@ -50,7 +50,7 @@ export class Interrupted extends Error {}
  * @property {boolean} [show] print through instead of keeping
  *
  * @param {Command} options
- * @returns {Promise<{ code: number | null, stdout: string, output: string }>}
+ * @returns {Promise<{ code: number | null, stdout: string, output: string, timedOut: boolean }>}
  */
 export async function run(options) {
   const { command, args = [], cwd, user = {}, input, onLine, finish = false } = options
@@ -71,6 +71,7 @@ export async function run(options) {
     stdio,
   })
 
+  let timedOut = false
   let stdout = ''
   let output = ''
   /** @param {Buffer} chunk */
@@ -97,13 +98,14 @@ export async function run(options) {
     options.timeoutMs === undefined
       ? undefined
       : setTimeout(() => {
+          timedOut = true
           output += `\n(stopped: not done after ${(options.timeoutMs ?? 0) / 1000} s)`
           signalGroup(child, 'SIGKILL')
         }, options.timeoutMs)
   try {
     const [code] = /** @type {[number | null]} */ (await ended)
     if (code !== 0 && !options.mayFail) throw new CommandFailed([command, ...args].join(' '), code, output)
-    return { code, stdout, output }
+    return { code, stdout, output, timedOut }
   } finally {
     clearTimeout(timer)
     running.delete(entry)
