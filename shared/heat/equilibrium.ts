@@ -8,6 +8,8 @@ import { integrate } from './integrator'
 const CLOSE_K = 1e-5
 const LONGEST_STEP_K = 25
 const NEWTON_STEPS = 30
+/** An end this near one that was reached before needs no second look at the way to it [K]. */
+const FAMILIAR_K = 12
 /** How near the coolant must come to rest for a look at the sump [K], and how long it may take. */
 const COOLANT_CLOSE_K = 1e-2
 const COOLANT_STEPS = 20
@@ -125,7 +127,7 @@ function settleByTime(thermal: ThermalPoint, from: ArrayLike<number>): [number, 
  * followed in time.
  * @param thermal - operating point with its circuit
  * @param from - temperatures it comes from [°C]
- * @param guess - temperatures Newton starts at [°C], where some are known to lie near
+ * @param guess - a rest reached before from the same start at nearly the same point, where there is one [°C]
  * @returns temperatures at rest [°C]
  */
 export function equilibriumOf(
@@ -134,7 +136,8 @@ export function equilibriumOf(
   guess: ArrayLike<number> = from,
 ): Float64Array {
   let pair = newton(thermal, guess[SUMP]!, guess[COOLANT]!)
-  if (pair === undefined || !isNextRest(thermal, from[SUMP]!, pair[0], pair[1]))
+  const isFamiliar = guess !== from && pair !== undefined && Math.abs(pair[0] - guess[SUMP]!) < FAMILIAR_K
+  if (pair === undefined || (!isFamiliar && !isNextRest(thermal, from[SUMP]!, pair[0], pair[1])))
     pair = settleByTime(thermal, from)
   fillSlowRates(thermal, pair[0], pair[1])
   return Float64Array.from(temperatures)

@@ -49,6 +49,8 @@ const WEAKEST_ACCELERATION_MPS2 = 0.05
 const COAST_DECELERATION_MPS2 = 1.2
 const PULL_AWAY_BINS = 8
 const BISECTIONS = 60
+/** Sixty halvings end far below what a double tells apart; bisection stops where nothing is gained [relative]. */
+const RESOLUTION = 1e-13
 /** An upshift slips its clutch for this long [s] against this inertia [kg m²]. Judgement. */
 const SHIFT_DURATION_S = 0.6
 const SHIFT_INERTIA_KG_M2 = 0.25
@@ -105,7 +107,7 @@ export function bisect(passing: number, failing: number, passes: (value: number)
   let [good, bad] = [passing, failing]
   for (let step = 0; step < BISECTIONS; step++) {
     const middle = 0.5 * (good + bad)
-    if (middle === good || middle === bad) break
+    if (Math.abs(bad - good) <= RESOLUTION * Math.abs(good)) break
     if (passes(middle)) good = middle
     else bad = middle
   }

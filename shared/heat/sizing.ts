@@ -16,7 +16,7 @@ import type { Sizing, TargetName } from './types'
 
 const TARGET_NAMES = ['sumpC', 'coolerInletC'] as const
 const SMALLEST_AREA_M2 = 1e-6
-const AREA_TOLERANCE_M2 = 2e-8
+const AREA_TOLERANCE_M2 = 1e-7
 /** Shares of the found area at which it is checked that nothing smaller holds. */
 const CHECK_SHARES = [0.35, 0.7] as const
 /** Areas looked at, as shares of the largest core, where the largest itself does not hold. */
@@ -44,6 +44,7 @@ class CoolerTrial {
   private readonly points: OperatingPoint[]
   private readonly guesses: Float64Array[]
   private readonly tables = new Map<number, LoopTable>()
+  private readonly tried = new Map<number, Excess>()
 
   constructor(request: SizingRequest) {
     this.request = request
@@ -57,8 +58,16 @@ class CoolerTrial {
     return this.truck.resolved.masses.oil
   }
 
-  /** Excess over each target with a cooler of an area added; 0 for none. */
+  /** Excess over each target with a cooler of an area added; 0 for none. Each area is tried once. */
   excess(faceAreaM2: number): Excess {
+    const known = this.tried.get(faceAreaM2)
+    if (known !== undefined) return known
+    const excess = this.tryArea(faceAreaM2)
+    this.tried.set(faceAreaM2, excess)
+    return excess
+  }
+
+  private tryArea(faceAreaM2: number): Excess {
     const { resolved, system } = this.truck
     const { construction, position, targets, basis, input } = this.request
     const coolers =
@@ -92,25 +101,23 @@ class CoolerTrial {
   }
 }
 
-/** An area that holds: the largest core, or, as bigger is not always cooler, the best of a scan. */
-function findHoldingArea(excess: (area: number) => number): number | undefined {
-  if (excess(LARGEST_CORE_M2) <= 0) return LARGEST_CORE_M2
+/** An area that holds: the largest core, or, as bigger is not always cooler, the first of a scan. */
+function findHoldingArea(miss: (area: number) => number): number | undefined {
+  if (miss(LARGEST_CORE_M2) <= 0) return LARGEST_CORE_M2
   for (let k = 1; k < SCAN_POINTS; k++) {
     const area = (LARGEST_CORE_M2 * k) / SCAN_POINTS
-    if (excess(area) <= 0) return area
+    if (miss(area) <= 0) return area
   }
   return undefined
 }
 
 /** Smallest area that holds, below one that does. */
-function smallestArea(excess: (area: number) => number, holding: number): number {
+function smallestArea(miss: (area: number) => number, holding: number): number {
+  if (miss(SMALLEST_AREA_M2) <= 0) return SMALLEST_AREA_M2
   let high = holding
   for (;;) {
-    const atLow = excess(SMALLEST_AREA_M2)
-    if (atLow <= 0) return SMALLEST_AREA_M2
-    let area = findRoot(excess, SMALLEST_AREA_M2, high, atLow, excess(high), AREA_TOLERANCE_M2)
-    if (excess(area) > 0) area = Math.min(high, area + AREA_TOLERANCE_M2)
-    const smaller = CHECK_SHARES.map((share) => share * area).find((candidate) => excess(candidate) <= 0)
+    const area = findRoot(miss, SMALLEST_AREA_M2, high, miss(SMALLEST_AREA_M2), miss(high), AREA_TOLERANCE_M2)
+    const smaller = CHECK_SHARES.map((share) => share * area).find((candidate) => miss(candidate) <= 0)
     if (smaller === undefined) return area
     high = smaller
   }
@@ -119,21 +126,17 @@ function smallestArea(excess: (area: number) => number, holding: number): number
 /**
  * Smallest face area of a generic cooler that holds the targets, added last in the loop, in series.
  * @param request - input, construction, position, targets, basis
- * @returns area, heat and UA at the reference point, and the target that decided; 0 when the targets hold already
+ * @returns area, to 1e-7 m², heat and UA at the reference point, and the target that decided; 0 when the targets hold
+ * already
  * @throws AppError no_single_cooler when no core up to 0.12 m² does; the errors of `estimate`
  */
 export function sizing(request: SizingRequest): Sizing {
   const trial = new CoolerTrial(request)
   if (worst(trial.excess(0)) <= 0) return { faceAreaM2: 0, heatW: 0, uaWK: 0 }
-  const known = new Map<number, number>()
-  const excess = (area: number) => {
-    const value = known.get(area) ?? worst(trial.excess(area))
-    known.set(area, value)
-    return value
-  }
-  const holding = findHoldingArea(excess)
+  const miss = (area: number) => worst(trial.excess(area))
+  const holding = findHoldingArea(miss)
   if (holding === undefined) throw noSingleCooler(request, trial)
-  const faceAreaM2 = smallestArea(excess, holding)
+  const faceAreaM2 = smallestArea(miss, holding)
   const uaWK = genericCooler(trial.oil, request.construction, request.position, faceAreaM2).uaRatedWK
   return {
     faceAreaM2,
