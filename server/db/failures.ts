@@ -11,6 +11,8 @@ const UNAVAILABLE_STATES = new Set([
   '57P03', // cannot connect now
   '57P05', // idle session timeout
   '25P03', // idle in transaction timeout
+  '3D000', // the database is not there
+  '55000', // the database takes no connections
 ])
 const NODE_CODES = new Set([
   'ECONNREFUSED',
@@ -22,7 +24,7 @@ const NODE_CODES = new Set([
   'EHOSTUNREACH',
 ])
 
-/** The driver and the pool throw these without any code; the texts are theirs, not the database's. */
+/** The driver and the pool throw these without any code; the texts are theirs, not the database's. Knex puts the SQL in front. */
 const CLIENT_MESSAGES = [
   'Query read timeout',
   'timeout expired',
@@ -43,7 +45,10 @@ function codeOf(error: unknown): string | undefined {
 export function isConnectionLost(error: unknown): boolean {
   const code = codeOf(error)
   if (code !== undefined) return code.startsWith('08') || code.startsWith('57P') || NODE_CODES.has(code)
-  return error instanceof Error && CLIENT_MESSAGES.some((text) => error.message.startsWith(text))
+  return (
+    error instanceof Error &&
+    CLIENT_MESSAGES.some((text) => error.message.startsWith(text) || error.message.includes(` - ${text}`))
+  )
 }
 
 /** Reads SQLSTATE and driver codes; undefined for what is not a failure of the database, or a mistake of ours. */
@@ -51,7 +56,7 @@ export function classifyFailure(error: unknown): DatabaseFailure | undefined {
   if (isConnectionLost(error)) return 'unavailable'
   const code = codeOf(error)
   if (code === undefined) return undefined
-  if (UNAVAILABLE_STATES.has(code) || code.startsWith('53')) return 'unavailable'
+  if (UNAVAILABLE_STATES.has(code) || code.startsWith('53') || code.startsWith('28')) return 'unavailable'
   if (code === '23505' || code === '23503') return 'conflict'
   if (code === '22P05' || code === '22021') return 'bad_text'
   return undefined

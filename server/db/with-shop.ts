@@ -36,6 +36,14 @@ interface SessionRow {
 
 interface PooledConnection {
   connection: { stream: { destroy: () => void } }
+  /** By this Knex's pool knows a connection it must not hand out again. */
+  __knex__disposed?: unknown
+}
+
+/** Cuts a connection, and marks it before the pool could give it to the next request. */
+function cut(connection: PooledConnection, error: unknown): void {
+  connection.__knex__disposed = error
+  connection.connection.stream.destroy()
 }
 
 /**
@@ -51,14 +59,14 @@ async function inTransaction<T>(work: (trx: Knex.Transaction) => Promise<T>): Pr
         try {
           return await work(trx)
         } catch (error) {
-          if (isConnectionLost(error)) connection.connection.stream.destroy()
+          if (isConnectionLost(error)) cut(connection, error)
           throw error
         }
       },
       { connection },
     )
   } catch (error) {
-    if (isConnectionLost(error)) connection.connection.stream.destroy()
+    if (isConnectionLost(error)) cut(connection, error)
     throw error
   } finally {
     await database.client.releaseConnection(connection)
