@@ -37,7 +37,7 @@ const STEP_ERROR_K = 1e-3
 const STEP_STIFFNESS = 0.6
 const LONGEST_EXPLICIT_S = 10
 /** Change of the sump over which the oil loop may be taken as it was [K]. */
-const LOOP_KEPT_K = 0.1
+const LOOP_KEPT_K = 0.02
 
 /** What the log says beside speed and grade; engine speed in rad/s. */
 interface Logged {
