@@ -10,7 +10,7 @@ import { type ReferenceInput, ReferenceModel, ReferenceRefusal, type Temperature
  * Two implementations of the same equations, written apart, on random trucks. Where they disagree, one of them has
  * misread an equation or lost accuracy. LONGPULL_DIFFERENTIAL_RUNS asks for more trucks (the deep run does).
  */
-const RUNS = Number(process.env.LONGPULL_DIFFERENTIAL_RUNS ?? 12)
+const RUNS = Number(process.env.LONGPULL_DIFFERENTIAL_RUNS ?? 4)
 const SEED = Number(process.env.LONGPULL_DIFFERENTIAL_SEED ?? 20261201)
 const STEP_S = 0.5
 

@@ -695,6 +695,10 @@ export class ReferenceModel {
   }
 
   // coolers
+  /** Viscosity at the rating's oil inlet. */
+  ratedNu(c: Cooler): number {
+    return this.once(c.rating, () => this.nu(c.rating.oilInC ?? 93.3))
+  }
   private readonly knownUa = new Map<object, number>()
   private once(key: object, value: () => number): number {
     let known = this.knownUa.get(key)
@@ -731,7 +735,7 @@ export class ReferenceModel {
     return (
       c.rating.pressureDropPa *
       Math.pow(q / c.rating.oilFlowM3S, k.dpQ) *
-      Math.pow(nu / this.nu(c.rating.oilInC ?? 93.3), k.dpNu)
+      Math.pow(nu / this.ratedNu(c), k.dpNu)
     )
   }
   groups(): number[][] {
@@ -748,11 +752,11 @@ export class ReferenceModel {
     const flowAt = (i: number, dp: number) => {
       const c = this.coolers[i]!
       const k = CONSTRUCTION[c.construction]
-      const base = c.rating.pressureDropPa * Math.pow(nu / this.nu(c.rating.oilInC ?? 93.3), k.dpNu)
+      const base = c.rating.pressureDropPa * Math.pow(nu / this.ratedNu(c), k.dpNu)
       return c.rating.oilFlowM3S * Math.pow(dp / base, 1 / k.dpQ)
     }
     const total = (logDp: number) => group.reduce((sum, i) => sum + flowAt(i, Math.exp(logDp)), 0) - q
-    const dp = Math.exp(bisect(total, -60, 60))
+    const dp = Math.exp(bisect(total, -20, 20, 52))
     return { shares: group.map((i) => flowAt(i, dp) / q), dp }
   }
   flow(d: Demand, sump: number): number {
@@ -776,7 +780,7 @@ export class ReferenceModel {
       for (const g of this.groups()) p += this.split(g, q, nu).dp
       return p - pMax * d.feed
     }
-    return bisect(need, 1e-12, qOpen, 60)
+    return bisect(need, 1e-12, qOpen, 42)
   }
 
   /** Every heat flow at one instant. */
@@ -818,8 +822,7 @@ export class ReferenceModel {
           const qi = q * x * shares[j]!
           let h = 0
           if (qi > 0) {
-            const oil =
-              Math.pow(c.rating.oilFlowM3S / qi, k.m) * Math.pow(nu / this.nu(c.rating.oilInC ?? 93.3), k.n)
+            const oil = Math.pow(c.rating.oilFlowM3S / qi, k.m) * Math.pow(nu / this.ratedNu(c), k.n)
             const inTank = c.construction === 'in-tank'
             const ratio = inTank
               ? coolantFlow / c.rating.coolantFlowM3S!
@@ -1040,7 +1043,7 @@ export class ReferenceModel {
       const dx = solve(M, f)
       const size = Math.max(...dx.map(Math.abs))
       T = T.map((v, i) => v + dx[i]!) as Temperatures
-      if (size < 1e-9 && dt > 1e5) break
+      if (size < 1e-6 && dt > 1e6) break
       dt = size < 1 ? Math.min(dt * 2, 1e9) : size > 10 ? Math.max(dt / 2, 1) : dt
     }
     return T
