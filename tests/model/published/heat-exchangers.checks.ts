@@ -20,7 +20,7 @@ import {
  * & London, written in Poisson tail probabilities. ε = 1/(Cr NTU) Σ_n P(X > n) P(Y > n) with X, Y Poisson of means NTU and
  * Cr NTU.
  */
-export function exactCrossFlow(ntu: number, capacityRatio: number): number {
+function exactCrossFlow(ntu: number, capacityRatio: number): number {
   const tail = (mean: number, n: number) => {
     let below = 0
     for (let k = 0; k <= n; k++) below += (mean ** k * Math.exp(-mean)) / gamma(k + 1)
