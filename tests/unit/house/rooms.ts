@@ -65,16 +65,15 @@ export const ROOMS: Record<string, Room> = {
     rooms: ['shared/schemas/'],
     packages: NOTHING,
   },
-  'shared/build-sheet': { holds: /^shared\/build-sheet\//, rooms: [SHARED], packages: /^zod$/ },
   // Units and sums as people type them; loaded at the first keystroke.
   'shared/quantities': {
     holds: /^shared\/quantities\//,
     rooms: ['shared/units/'],
     packages: /^(mathjs|convert-units)$/,
   },
-  'shared/cooling-loop': { holds: /^shared\/cooling-loop\//, rooms: [SHARED], packages: /^zod$/ },
-  'shared/workbench': { holds: /^shared\/workbench\//, rooms: [SHARED], packages: /^zod$/ },
   'shared/charts': { holds: /^shared\/charts\//, rooms: [SHARED], packages: /^d3-(scale|shape)$/ },
+  // The other topics: pure, built on the rooms above and on each other.
+  'shared/topics': { holds: /^shared\/[a-z-]+\//, rooms: [SHARED], packages: /^zod$/ },
   'server/api': {
     holds: /^server\/(api|routes|middleware)\//,
     // Health is asked of the process and the database, not of a shop.
