@@ -1,6 +1,6 @@
 import { MIGRATION_TABLE } from './config'
-import { getDatabase } from './connection'
 import { MIGRATION_NAMES } from './migration-names'
+import { withoutShop } from './with-shop'
 
 async function withinMs<T>(limitMs: number, work: Promise<T>): Promise<T> {
   let timer: NodeJS.Timeout | undefined
@@ -18,7 +18,10 @@ async function withinMs<T>(limitMs: number, work: Promise<T>): Promise<T> {
 /** Whether the database answers within a second. */
 export async function isDatabaseUp(): Promise<boolean> {
   try {
-    await withinMs(1000, getDatabase().raw('select 1'))
+    await withinMs(
+      1000,
+      withoutShop((trx) => trx.raw('select 1')),
+    )
     return true
   } catch {
     return false
@@ -30,9 +33,11 @@ export async function isDatabaseReady(): Promise<boolean> {
   try {
     const done = await withinMs(
       1000,
-      getDatabase()<{ name: string }>(MIGRATION_TABLE)
-        .whereIn('name', [...MIGRATION_NAMES])
-        .count<[{ count: number }]>('name as count'),
+      withoutShop((trx) =>
+        trx(MIGRATION_TABLE)
+          .whereIn('name', [...MIGRATION_NAMES])
+          .count<{ count: number }[]>('name as count'),
+      ),
     )
     return done[0]?.count === MIGRATION_NAMES.length
   } catch {
