@@ -39,7 +39,7 @@ export function airDensity(pressurePa: number, airC: number): number {
  * @param airC - temperature [°C]; the standard is meant for 15-35 °C, used beyond here
  * @returns share of torque, above 0 to 1
  * Source: SAE J1349 (2004), atmospheric correction for naturally aspirated spark-ignition engines.
- * Example (computed here): 0.888 at 900 hPa and 25 °C.
+ * Example (computed here): 0.894 at 900 hPa and 25 °C.
  */
 export function naturalTorqueShare(pressurePa: number, airC: number): number {
   const correction = 1.18 * (990 / (pressurePa / 100)) * Math.sqrt((airC + 273.15) / 298.15) - 0.18

@@ -33,7 +33,7 @@ export const COUPLED = 4
  * @returns h [W/(m² K)]
  * Source: form of a turbulent boundary layer (Incropera et al., 6th ed., equation 7.38) plus free convection and
  * radiation; fitted to an estimate of 7-35 W/K for 0.7 m² at 0-65 mph (judgement).
- * Example (computed here): 39.1 W/(m² K) at 8 m/s.
+ * Example (computed here): 39.0 W/(m² K) at 8 m/s.
  */
 export function surfaceHeatTransfer(localSpeed: number): number {
   return localSpeed > 0 ? 10 + 5.5 * Math.exp(0.8 * Math.log(localSpeed)) : 10

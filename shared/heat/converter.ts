@@ -57,7 +57,7 @@ export function torqueRatio(speedRatio: number, stallTorqueRatio: number, coupli
  * @param turbineTorque - T_t [N·m], above 0
  * @param turbineSpeed - ω_t [rad/s], above 0
  * @returns SR, above 0 and below 1
- * Example (computed here): λ0 0.01, TR0 2, SRc 0.88, 200 N·m at 100 rad/s: SR 0.757.
+ * Example (computed here): λ0 0.01, TR0 2, SRc 0.88, 200 N·m at 100 rad/s: SR 0.6726.
  */
 export function solveSpeedRatio(converter: Converter, turbineTorque: number, turbineSpeed: number): number {
   const { stallTorqueRatio, couplingPoint } = converter

@@ -8,7 +8,7 @@
  * @returns Darcy friction factor
  * Source: S. W. Churchill, "Friction-factor equation spans all fluid-flow regimes", Chemical Engineering 84(24), 1977,
  * 91-92.
- * Example (computed here): Re 1e5, e/d 1e-4 gives 0.01850; Colebrook gives 0.01851.
+ * Example (computed here): Re 1e5, e/d 1e-4 gives 0.01846; Colebrook gives 0.01851.
  */
 export function churchillFrictionFactor(reynolds: number, relativeRoughness: number): number {
   return churchill(reynolds, relativeRoughness).factor
@@ -85,7 +85,7 @@ export function lineDrop(
  * @param viscosityMmSqS - kinematic viscosity [mm²/s]
  * @returns pressure drop [Pa]
  * Source: Darcy-Weisbach with loss coefficients, F. M. White, Fluid Mechanics, 7th ed., section 6.9.
- * Example (computed here): 9.5 mm, 4.2 m, K 6, 1.26e-4 m³/s at 810 kg/m³ and 9 mm²/s loses 22.1 kPa.
+ * Example (computed here): 9.5 mm, 4.2 m, K 6, 1.26e-4 m³/s at 810 kg/m³ and 9 mm²/s loses 27.0 kPa.
  */
 export function linePressureDrop(
   line: Line,

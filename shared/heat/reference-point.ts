@@ -2,7 +2,7 @@ import type { AirConstruction, Fluid } from '../schemas/heat-input'
 import { RATING_AIR_DENSITY_KG_M3 } from './air'
 import { CONSTRUCTIONS, airCapacityRate, exchangerHeat, oilCapacityRate } from './coolers'
 import type { CoolerUnit } from './coolers'
-import { kinematicViscosity, makeOil } from './fluids'
+import { kinematicViscosity } from './fluids'
 import type { Oil } from './fluids'
 import { DEFAULTS } from './resolve'
 
@@ -41,7 +41,7 @@ export const REFERENCE_FLUID: Fluid = { class: 'atf-standard' }
  * @param uaWK - conductance there [W/K]
  * @param faceAreaM2 - [m²]
  * @returns heat [W]
- * Example (computed here): 100 W/K and 0.05 m² with atf-standard carry 4212 W.
+ * Example (computed here): 100 W/K and 0.05 m² with atf-standard carry 3678 W.
  */
 export function heatAtReferencePoint(oil: Oil, uaWK: number, faceAreaM2: number): number {
   return exchangerHeat(
@@ -79,5 +79,3 @@ export function genericCooler(
     fanFlowM3S: 0,
   }
 }
-
-export const referenceOil = () => makeOil(REFERENCE_FLUID)

@@ -178,7 +178,7 @@ function resolveConverter(build: Build, curve: Pchip, pump: Pump, ratedTorqueNm:
  * @param pump - its pressures and displacement
  * @param ratedTorqueNm - torque at which line pressure is full [N·m]
  * @returns T [N·m]; not positive when the pump alone asks for more
- * Example (computed here): 400 N·m with the default pump rated for 455 N·m leaves 394.7 N·m.
+ * Example (computed here): 400 N·m with the default pump rated for 455 N·m leaves 394.9 N·m.
  */
 export function defaultStallTorque(engineTorque: number, pump: Pump, ratedTorqueNm: number): number {
   const unloaded = pumpTorque(pump, 0, ratedTorqueNm)
