@@ -2,7 +2,7 @@ import type { AirConstruction, Fluid } from '../schemas/heat-input'
 import { RATING_AIR_DENSITY_KG_M3 } from './air'
 import { CONSTRUCTIONS, airCapacityRate, exchangerHeat, oilCapacityRate } from './coolers'
 import type { CoolerUnit } from './coolers'
-import { kinematicViscosity } from './fluids'
+import { kinematicViscosity, makeOil } from './fluids'
 import type { Oil } from './fluids'
 import { DEFAULTS } from './resolve'
 
@@ -79,3 +79,6 @@ export function genericCooler(
     fanFlowM3S: 0,
   }
 }
+
+/** The oil parts are compared with where none is named. */
+export const referenceOil = () => makeOil(REFERENCE_FLUID)
