@@ -29,15 +29,25 @@ const LAST_PLACE = 0.5 + Math.sqrt(0.15)
 const OUTER_WEIGHT = 5 / 18
 const MIDDLE_WEIGHT = 8 / 18
 
+/** A step is cut where it spans more halvings of the fluid's life than this, up to so many pieces: the factor is no cubic. */
+const HALVINGS_PER_PIECE = 2
+const MOST_PIECES = 64
+
 /** Time-integral of the ageing factor of one temperature over a step [s]. */
 function ageingOnStep(life: ResolvedFluidLife, step: StepRecord, index: number): number {
-  return (
-    step.lengthS *
-    (OUTER_WEIGHT *
-      (ageingFactor(life, onStep(step, index, FIRST_PLACE)) +
-        ageingFactor(life, onStep(step, index, LAST_PLACE))) +
-      MIDDLE_WEIGHT * ageingFactor(life, onStep(step, index, 0.5)))
-  )
+  const span = Math.abs(step.to[index]! - step.from[index]!)
+  const pieces =
+    span <= HALVINGS_PER_PIECE * life.halvingK
+      ? 1
+      : Math.min(MOST_PIECES, Math.ceil(span / (HALVINGS_PER_PIECE * life.halvingK)))
+  let sum = 0
+  for (let piece = 0; piece < pieces; piece++)
+    sum +=
+      OUTER_WEIGHT *
+        (ageingFactor(life, onStep(step, index, (piece + FIRST_PLACE) / pieces)) +
+          ageingFactor(life, onStep(step, index, (piece + LAST_PLACE) / pieces))) +
+      MIDDLE_WEIGHT * ageingFactor(life, onStep(step, index, (piece + 0.5) / pieces))
+  return (step.lengthS / pieces) * sum
 }
 
 /** Adds one step of the integrator. */
