@@ -4,7 +4,14 @@ import { replay } from '#shared/heat'
 import type { HeatInput, Segment } from '#shared/schemas/heat-input'
 import type { Estimate, SegmentResult, State } from '#shared/heat/types'
 import { arbitraryInput, evenly } from '../../support/arbitrary-truck'
-import { answered, answerOf, holdsFor, PROPERTY_TIMEOUT_MS, withSegments } from '../../support/properties'
+import {
+  answered,
+  answerOf,
+  holdsFor,
+  isOil,
+  PROPERTY_TIMEOUT_MS,
+  withSegments,
+} from '../../support/properties'
 
 /** Laws of the drive in time. */
 
@@ -82,6 +89,7 @@ describe('the drive in time', () => {
         const first = lasting(segment, 0.01)
         const answer = answered(withSegments(input, [first, ...Array<Segment>(pieces).fill(segment)]))
         const states = answer.segments.map(({ end }) => end)
+        fc.pre(states.every(isOil))
         const { fluid, fluidVolumeM3, dryMassKg } = input.build.transmission
         const density15 =
           fluid.density15KgM3 ??
@@ -134,7 +142,7 @@ describe('the drive in time', () => {
         const segment = firstSegment(input) as Segment & { kind: 'steady' }
         const steady = answered(withSegments(input, [lasting(segment, 600)]), { stepS: 10 })
         const driven = last(steady)
-        fc.pre(driven.speedHeld)
+        fc.pre(driven.speedHeld && isOil(driven.end) && steady.peakCoolerInletC < 300)
         const timeS = Array.from({ length: 601 }, (_, second) => 1000 + second)
         const trace = {
           timeS,
@@ -200,6 +208,7 @@ describe('the drive in time', () => {
     () =>
       holdsFor(40, arbitraryInput({ maxSegments: 2 }), (input) => {
         const answer = answered(input, { stepS: 1 })
+        fc.pre(answer.peakCoolerInletC < 300)
         const share = input.build.converter.oilShare ?? 0.35
         const rate = (oilC: number) =>
           2 ** ((Math.max(oilC, 79.444) - 79.444) / 11.111) / (160_934_400 / 15.6464)

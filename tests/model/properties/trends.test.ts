@@ -7,8 +7,8 @@ import { holdsFor, PROPERTY_TIMEOUT_MS, settledAsOil } from '../../support/prope
 /**
  * Which way things go. Only what is a law for every truck is here. Not laws, and so not asserted: that the sump falls with
  * more flow, a wider line, altitude, speed or a better cooler whose sink is the warmer; that a tiny cooler in series cools;
- * that the hot line rises with the day (warmer oil is thinner, flows faster and carries the converter's heat off at a smaller
- * difference); that a hotter day or a blocked stack heats oil whose tank cooler it gives more coolant, by opening the thermostat.
+ * that the hot line rises with the heat or with the day (warmer oil is thinner, flows faster and carries the converter's
+ * heat off at a smaller difference); that a hotter day or a blocked stack heats oil whose tank cooler it gives more coolant, by opening the thermostat.
  */
 
 /** Rounding of two equilibria solved apart [K]. */
@@ -38,7 +38,7 @@ const hasTank = (input: HeatInput) =>
 
 describe('equilibrium', () => {
   it(
-    'is hotter with more heat, where no bypass answers it',
+    'has a hotter sump with more heat, where no bypass answers it',
     () =>
       holdsFor(
         150,
@@ -48,7 +48,6 @@ describe('equilibrium', () => {
           const before = settledAsOil(input).state
           const after = settledAsOil(withCalibration(input, { heatScale: scale * more })).state
           expect(after.sumpC).toBeGreaterThanOrEqual(before.sumpC - SLACK_K)
-          expect(after.coolerInletC).toBeGreaterThanOrEqual(before.coolerInletC - SLACK_K)
         },
       ),
     PROPERTY_TIMEOUT_MS,
@@ -95,7 +94,7 @@ describe('equilibrium', () => {
   )
 
   it(
-    'is hotter with a blocked cooler, where that cooler cools',
+    'is hotter with a blocked cooler, where every cooler cools',
     () =>
       holdsFor(
         150,
@@ -119,7 +118,8 @@ describe('equilibrium', () => {
             ).state
           const clean = blockedBy(0)
           const blocked = blockedBy(blockedFraction)
-          fc.pre((clean.coolerHeatW[index] ?? NaN) >= 0 && (blocked.coolerHeatW[index] ?? NaN) >= 0)
+          // A blocked stack cooler also spares the radiator its heat: coolant that warms the oil in a tank is then cooler.
+          fc.pre([...clean.coolerHeatW, ...blocked.coolerHeatW].every((heat) => heat >= 0))
           expect(blocked.sumpC).toBeGreaterThanOrEqual(clean.sumpC - SLACK_K)
         },
       ),
