@@ -57,7 +57,8 @@ export function useNewBuild() {
 
   /** The last facts that make a truck: the answer stays where it was while a field is being mended. */
   const draft = shallowRef<BuildDraft>(createSheetFromFacts(card.value.facts))
-  watch([card, coolers], () => {
+  const namesParts = () => facts.value.coolers.extras.some(({ kind }) => kind === 'catalogue')
+  watch([facts, () => card.value.typed, () => (namesParts() ? coolers.value : null)], () => {
     if (!checked.value.success) return
     try {
       draft.value = createSheetFromFacts(checked.value.data, {
@@ -122,9 +123,11 @@ export function useNewBuild() {
     card.value = { ...createCard(system.value), ids: newIds() }
     problem.value = null
     keep()
+    void shown.startHere()
   }
   onMounted(async () => {
     card.value = readCard() ?? { ...card.value, ids: newIds() }
+    void shown.startHere()
     try {
       coolers.value = (await api<CatalogueCoolerList>('/api/coolers')).coolers
     } catch (error) {

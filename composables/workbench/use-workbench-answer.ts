@@ -51,17 +51,26 @@ export function useWorkbenchAnswer(
   }
 
   watch(request, (now) => {
+    const next = computeAnswer(now)
     // The first move of a change leaves its mark; the moves that follow belong to the same change.
-    if (timer === undefined) ghost.value = settled
+    if (timer === undefined && next.kind === 'answer') ghost.value = settled
     clearTimeout(timer)
     timer = setTimeout(settle, SETTLED_AFTER_MS)
-    const next = computeAnswer(now)
     refusal.value = next.kind === 'refusal' ? next : null
     if (next.kind === 'answer') {
       answer.value = next
       evidence.order(withExtras())
     }
   })
+
+  /** What is shown now is where a person starts from: nothing was before it. */
+  async function startHere() {
+    await nextTick()
+    clearTimeout(timer)
+    timer = undefined
+    ghost.value = null
+    settled = snapshot(answer.value, evidence.grades.value)
+  }
 
   /** Asks for the evidence again, for the same answer: the catalogue came, or parts are to be mounted elsewhere. */
   function deepen() {
@@ -75,7 +84,7 @@ export function useWorkbenchAnswer(
   onScopeDispose(() => clearTimeout(timer))
 
   const { grades, depth, upToDate } = evidence
-  return { answer, refusal, ghost, settledCount, grades, depth, upToDate, deepen }
+  return { answer, refusal, ghost, settledCount, grades, depth, upToDate, deepen, startHere }
 }
 
 function firstGrades(request: WorkbenchRequest, answer: Answer): GradeChartData | null {

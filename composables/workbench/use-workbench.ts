@@ -146,6 +146,7 @@ export function useWorkbench(opened: {
         buildPart.restore(kept.build.changes, kept.build.version)
       if (Object.keys(kept.scenario.changes).length > 0)
         scenarioPart.restore(kept.scenario.changes, kept.scenario.version)
+      void shown.startHere()
     },
     when: () => [values.value, state.value],
   })
