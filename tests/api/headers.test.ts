@@ -81,6 +81,16 @@ describe('S21: nothing hidden is served', () => {
     expect(response.status).toBe(404)
   })
 
+  it.each(['NUXT_SESSION_PASSWORD', 'DATABASE_URL'])(
+    'without %s it does not start, and says so',
+    async (name) => {
+      const broken = await startApp({ database, env: { [name]: undefined }, untilReady: false })
+      await broken.ended
+      expect(broken.logs().join('\n')).toContain(`${name} must be set`)
+      await expect(fetch(`${broken.baseUrl}/livez`)).rejects.toThrow()
+    },
+  )
+
   it('tells nobody what it runs on', async () => {
     for (const path of ['/api/health', '/readyz', '/livez']) {
       const text = await (await fetch(`${app.baseUrl}${path}`)).text()

@@ -4,7 +4,8 @@ import { API_ROUTES } from '../../server/utils/api-routes'
 import { deriveInput } from '../../shared/build-sheet'
 import { PERMISSIONS, type Action } from '../../shared/permissions'
 import type { Role } from '../../shared/schemas/auth'
-import type { BuildAnswer } from '../../shared/schemas/build'
+import type { BuildAnswer, BuildList } from '../../shared/schemas/build'
+import type { CatalogueCoolerList } from '../../shared/schemas/catalogue-cooler'
 import type { ErrorBodySchema } from '../../shared/schemas/error'
 import type { z } from 'zod'
 import { startApp, type TestApp } from '../support/app'
@@ -616,3 +617,44 @@ describe.each(Object.keys(ROWS))('S1: %s', (key) => {
       expect(await checksums(shopId)).toEqual(before)
     })
 })
+
+describe('S1: with the row rules switched off, the queries by themselves', () => {
+  beforeAll(() => setRowRules('disable'))
+  afterAll(() => setRowRules('enable'))
+
+  const withForeign = Object.keys(ROWS).filter((key) => ROWS[key]?.foreign !== undefined)
+
+  it.each(withForeign)('%s: another shop’s id is not found', async (key) => {
+    const [method] = splitKey(key)
+    const row = ROWS[key] as Row
+    const before = await checksums(people.otherOwner.me.shop.id)
+    const person = maker(row.action)
+    for (const call of row.foreign?.(await row.good(person), other) ?? []) {
+      const answer = await send(person, method, call)
+      expect(answer.status, `${call.path}: ${answer.text}`).toBe(404)
+    }
+    expect(await checksums(people.otherOwner.me.shop.id)).toEqual(before)
+  })
+
+  it('lists hold the own shop’s rows only', async () => {
+    const { builds, total } = (await people.estimator.call('GET', '/api/builds')).body as BuildList
+    const own = await queryAsAdmin(database, 'select from builds where shop_id = $1', [
+      people.estimator.me.shop.id,
+    ])
+    expect(total).toBe(own.length)
+    expect(builds.filter(({ id }) => id === other.build.id)).toEqual([])
+    const found = (await people.estimator.call('GET', '/api/builds?search=test')).body as BuildList
+    expect(found.builds.filter(({ id }) => id === other.build.id)).toEqual([])
+    const { coolers } = (await people.estimator.call('GET', '/api/coolers')).body as CatalogueCoolerList
+    expect(coolers).toHaveLength(24)
+    expect(coolers.filter(({ ratings }) => ratings.length > 4)).toEqual([])
+  })
+})
+
+async function setRowRules(to: 'enable' | 'disable'): Promise<void> {
+  const tables = await queryAsAdmin<{ name: string }>(
+    database,
+    `select tablename as name from pg_policies where policyname = 'of_shop'`,
+  )
+  for (const { name } of tables) await queryAsAdmin(database, `alter table ${name} ${to} row level security`)
+}
