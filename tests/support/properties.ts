@@ -6,7 +6,7 @@ import type { HeatInput, Segment } from '#shared/schemas/heat-input'
 
 /**
  * How properties are run: the same inputs every time, and as few as the fast run can afford. A deep run asks for more
- * with PROPERTY_RUNS (a multiple of the fast run, such as 30) and for others with PROPERTY_SEED.
+ * with PROPERTY_RUNS (a multiple of the fast run, such as 10) and for others with PROPERTY_SEED.
  */
 const MULTIPLE = Number(process.env['PROPERTY_RUNS'] ?? '1')
 const SEED = Number(process.env['PROPERTY_SEED'] ?? '20260117')

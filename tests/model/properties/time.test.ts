@@ -15,6 +15,9 @@ import {
 
 /** Laws of the drive in time. */
 
+/** Each of two runs may be 0.1 K off the exact solution; two of them may be that far apart on either side [K]. */
+const APART_K = 0.2
+
 const TEMPERATURES = ['sumpC', 'coolerInletC', 'caseC', 'coolantC', 'axleC', 'transferCaseC'] as const
 
 function expectSameEnd(actual: State, wanted: State, toleranceK: number) {
@@ -51,10 +54,10 @@ describe('the drive in time', () => {
             lasting(segment, durationS * (1 - share)),
           ]),
         )
-        expectSameEnd(last(split).end, last(whole).end, 0.1)
-        expect(Math.abs(split.peakSumpC - whole.peakSumpC)).toBeLessThanOrEqual(0.1)
-        expect(Math.abs(split.peakCoolerInletC - whole.peakCoolerInletC)).toBeLessThanOrEqual(0.1)
-        expect(Math.abs(split.meanSumpC - whole.meanSumpC)).toBeLessThanOrEqual(0.1)
+        expectSameEnd(last(split).end, last(whole).end, APART_K)
+        expect(Math.abs(split.peakSumpC - whole.peakSumpC)).toBeLessThanOrEqual(APART_K)
+        expect(Math.abs(split.peakCoolerInletC - whole.peakCoolerInletC)).toBeLessThanOrEqual(APART_K)
+        expect(Math.abs(split.meanSumpC - whole.meanSumpC)).toBeLessThanOrEqual(APART_K)
         // Beyond any oil its ageing rate doubles every second or so; no promise there.
         if (whole.peakCoolerInletC < 300)
           expect(Math.abs(split.fluidDamage / whole.fluidDamage - 1)).toBeLessThanOrEqual(0.01)
@@ -158,17 +161,17 @@ describe('the drive in time', () => {
         const answer = replay({ input, trace })
         expect(answer.forceLimitedSamples).toBe(0)
         expect(answer.timeS).toEqual(timeS)
-        expect(Math.abs((answer.sumpC.at(-1) ?? NaN) - driven.end.sumpC)).toBeLessThanOrEqual(0.1)
+        expect(Math.abs((answer.sumpC.at(-1) ?? NaN) - driven.end.sumpC)).toBeLessThanOrEqual(APART_K)
         expect(Math.abs((answer.coolerInletC.at(-1) ?? NaN) - driven.end.coolerInletC)).toBeLessThanOrEqual(
-          0.1,
+          APART_K,
         )
-        expect(Math.abs((answer.coolantC.at(-1) ?? NaN) - driven.end.coolantC)).toBeLessThanOrEqual(0.1)
+        expect(Math.abs((answer.coolantC.at(-1) ?? NaN) - driven.end.coolantC)).toBeLessThanOrEqual(APART_K)
         steady.series.timeS.forEach((seriesS, index) => {
           const sample = Math.round(seriesS)
           expect(
             Math.abs((answer.sumpC[sample] ?? NaN) - (steady.series.sumpC[index] ?? NaN)),
             `sump at ${seriesS} s`,
-          ).toBeLessThanOrEqual(0.1)
+          ).toBeLessThanOrEqual(APART_K)
         })
       }),
     PROPERTY_TIMEOUT_MS,
@@ -225,8 +228,9 @@ describe('the drive in time', () => {
             mean += (dt / 2) * sump
           }
         }
-        expect(answer.fluidDamage / damage).toBeCloseTo(1, 2)
-        expect(answer.fluidDamageSumpOnly / sumpOnly).toBeCloseTo(1, 2)
+        // The trapezoid rule over 1 s points is the coarser of the two.
+        expect(Math.abs(answer.fluidDamage / damage - 1)).toBeLessThan(0.01)
+        expect(Math.abs(answer.fluidDamageSumpOnly / sumpOnly - 1)).toBeLessThan(0.01)
         expect(Math.abs(answer.meanSumpC - mean / answer.totalS)).toBeLessThan(0.1)
         expect(answer.cyclesToFluidChange * answer.fluidDamage).toBeCloseTo(1, 9)
         expect((answer.hoursToFluidChange * 3600 * answer.fluidDamage) / answer.totalS).toBeCloseTo(1, 9)
