@@ -28,7 +28,7 @@ export const POSITION_WORDS: Record<AirPosition | 'radiator-tank', string> = {
 }
 
 /** A fan made for a remote core pulls air through it at about this speed [m/s]; common practice, no source. */
-const REMOTE_FAN_FACE_MPS = 3
+export const REMOTE_FAN_FACE_MPS = 3
 
 /** A model cooler of a construction, a size class and a place. */
 export function createGenericCooler(choice: {
@@ -38,16 +38,27 @@ export function createGenericCooler(choice: {
   fan?: boolean
 }): AirCooler {
   const { faceAreaM2 } = GENERIC_SIZES[choice.size]
-  const { uaPerAreaWM2K, pressureDropPa } = GENERIC_COOLERS[choice.construction]
+  const name = `${capitalize(choice.size)} ${CONSTRUCTION_WORDS[choice.construction]} cooler`
+  return createGenericCore({ ...choice, faceAreaM2, name })
+}
+
+/** The same for any face [m²]. */
+export function createGenericCore(choice: {
+  name: string
+  construction: AirConstruction
+  position: AirPosition
+  faceAreaM2: number
+  fan?: boolean
+}): AirCooler {
+  const { name, construction, position, faceAreaM2 } = choice
+  const { uaPerAreaWM2K, pressureDropPa } = GENERIC_COOLERS[construction]
   const heatW = heatAtReferencePoint(referenceOil(), uaPerAreaWM2K * faceAreaM2, faceAreaM2)
   return {
-    name: `${capitalize(choice.size)} ${CONSTRUCTION_WORDS[choice.construction]} cooler`,
-    construction: choice.construction,
-    position: choice.position,
+    name,
+    construction,
+    position,
     faceAreaM2,
-    ...(choice.position === 'remote' && choice.fan === true
-      ? { fanFlowM3S: REMOTE_FAN_FACE_MPS * faceAreaM2 }
-      : {}),
+    ...(position === 'remote' && choice.fan === true ? { fanFlowM3S: REMOTE_FAN_FACE_MPS * faceAreaM2 } : {}),
     rating: { ...REFERENCE_POINT, heatW: Math.round(heatW), pressureDropPa },
   }
 }

@@ -36,7 +36,7 @@ function isWork(segment: Segment): boolean {
  * The segments in which driving differently is meant: climbs and loose ground; on a drive cycle without any, all of it.
  * (Slowing down on the flat before the hill would only change how warm the hill is met.)
  */
-function listWork(duty: Duty): boolean[] {
+export function listWork(duty: Duty): boolean[] {
   const work = duty.segments.map(isWork)
   return work.includes(true) ? work : duty.segments.map(isUnderway)
 }

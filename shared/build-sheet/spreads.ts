@@ -244,7 +244,8 @@ export function spreadFactor(relative: number, deviations: number): number {
   return Math.exp(relative * deviations)
 }
 
-function matches(pattern: string, path: string): boolean {
+/** Whether a path is one of those a pattern stands for, `*` being any place in a list. */
+export function matchesPath(pattern: string, path: string): boolean {
   const [wanted, given] = [pattern.split('.'), path.split('.')]
   return (
     wanted.length === given.length && wanted.every((part, index) => part === '*' || part === given[index])
@@ -254,7 +255,7 @@ function matches(pattern: string, path: string): boolean {
 /** Which doubt a leaf of the sheet settles, if any. */
 export function findSpreadOfPath(path: string): Spread | undefined {
   return SPREAD_NAMES.map((name) => SPREADS[name]).find(({ paths }) =>
-    paths.some((pattern) => matches(pattern, path)),
+    paths.some((pattern) => matchesPath(pattern, path)),
   )
 }
 
