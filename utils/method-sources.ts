@@ -8,7 +8,7 @@ export const METHOD_SOURCES = [
   { use: 'Engine at altitude', work: 'SAE J1349, correction of naturally aspirated spark-ignition engines.' },
   {
     use: 'Drag of a transmission',
-    work: 'Commission Regulation (EU) 2017/2400, annex VI: the form of the torque-independent loss. Its size is judgement.',
+    work: 'Commission Regulation (EU) 2017/2400, annex VI: the form of the torque-independent loss. Its size is judgment.',
   },
   { use: 'Oil viscosity', work: 'ASTM D341, viscosity-temperature equation for liquid petroleum products.' },
   {

@@ -129,6 +129,26 @@ describe('the plain pages in use', () => {
     await tested.close()
   })
 
+  it('says that the database does not answer, on a page and where one signs in', async () => {
+    const lost = await createTestDatabase()
+    const cut = await startApp({ database: lost })
+    try {
+      const person = await signIn(cut, 'estimator')
+      await lost.drop()
+      const tested = await browser.newPage({ baseUrl: cut.baseUrl, person, expected: [/status of 503/] })
+      const { page } = tested
+      await tested.open('/builds')
+      await page.getByRole('heading', { name: 'The database does not answer right now' }).waitFor()
+      await page.getByRole('button', { name: 'Try again' }).waitFor()
+      expect(await findAccessibilityProblems(page)).toEqual([])
+      await tested.open('/sign-in')
+      await page.getByText('Signing in may fail for a moment.').waitFor()
+      await tested.close()
+    } finally {
+      await cut.stop()
+    }
+  })
+
   describe('units and theme', () => {
     it('are in the first paint, from what this device chose', async () => {
       const text = await (

@@ -59,7 +59,7 @@ describe('the sign-in form', () => {
   it('says beside each field what is missing, goes to the first, and asks nobody', async () => {
     const { email, password, errorOf, submit } = await mountForm()
     await submit()
-    expect(errorOf(email)).toContain('is missing')
+    await vi.waitFor(() => expect(errorOf(email)).toContain('is missing'))
     expect(errorOf(password)).toContain('is missing')
     expect(document.activeElement).toBe(email.element)
     expect(asked).toEqual([])
@@ -67,7 +67,7 @@ describe('the sign-in form', () => {
     await email.setValue('orrin')
     await password.setValue('secret')
     await submit()
-    expect(errorOf(email)).toContain('name@example.test')
+    await vi.waitFor(() => expect(errorOf(email)).toContain('name@example.test'))
     expect(errorOf(password)).toBe('')
     expect(asked).toEqual([])
   })
