@@ -37,7 +37,7 @@ const CLASSIC_4X4: Archetype = {
   id: 'classic-4x4',
   name: 'Classic short-wheelbase 4×4',
   words:
-    'An old, square, short 4×4 with a petrol V8 and a four-speed automatic with overdrive. Cooled by the radiator tank alone, as it left the works.',
+    'An old, square, short 4×4 with a gasoline V8 and a four-speed automatic with overdrive. Cooled by the radiator tank alone, as it left the works.',
   stockTireCode: '31x10.50R15',
   stockAxleRatio: 3.73,
   weights: { curbKg: 2010, loadedKg: 2240, grossKg: 2720, trailerKg: 2270 },
@@ -233,7 +233,7 @@ const MIDSIZE_4X4: Archetype = {
   id: 'midsize-4x4',
   name: 'Mid-size 4×4 V6',
   words:
-    'A five-seat 4×4 wagon with a petrol V6 and a five-speed automatic. The radiator tank is followed by the small tube cooler that comes with a tow package.',
+    'A five-seat 4×4 wagon with a gasoline V6 and a five-speed automatic. The radiator tank is followed by the small tube cooler that comes with a tow package.',
   stockTireCode: '265/70R17',
   stockAxleRatio: 3.73,
   weights: { curbKg: 2010, loadedKg: 2220, grossKg: 2630, trailerKg: 2270 },
