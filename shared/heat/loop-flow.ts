@@ -199,7 +199,7 @@ const LAST_TABLE_C = FIRST_NODE_C + (NODES - 2) * NODE_STEP_K
 
 /**
  * Loop states over sump temperature at one feed share, solved at nodes 4 K apart as they are needed and interpolated
- * by cubics between; worst error 0.1 % at -38 °C, 0.04 % where a line turns turbulent, 0.001 % elsewhere. Outside -40 to 252 °C it solves directly.
+ * by cubics between; worst error 0.1 % at -38 °C, 0.06 % where a line turns turbulent, 0.001 % elsewhere. Outside -40 to 252 °C it solves directly.
  */
 export class LoopTable implements LoopSource {
   private readonly loop: Loop

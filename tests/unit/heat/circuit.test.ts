@@ -105,9 +105,9 @@ describe('the tables of the cooler loop', () => {
   const truck = makeTruck(TRUCKS['tank and stack in parallel'] as HeatInput)
   const { loop } = truck.system
 
-  /** Within 0.1 % at -38 °C, where the viscosity doubles every 8 K, and far better where trucks run. */
+  /** Within 0.1 % at -38 °C, where the viscosity doubles every 8 K, 0.06 % where a line turns turbulent. */
   const expectClose = (read: number | undefined, solved: number | undefined, sumpC: number) =>
-    expect(Math.abs((read ?? NaN) / (solved ?? NaN) - 1)).toBeLessThan(sumpC < -20 ? 1.2e-3 : 5e-4)
+    expect(Math.abs((read ?? NaN) / (solved ?? NaN) - 1)).toBeLessThan(sumpC < -20 ? 1.2e-3 : 8e-4)
 
   it('agree with the loop solved directly', () => {
     const read = makeLoopState(2)
