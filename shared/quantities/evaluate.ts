@@ -14,6 +14,7 @@ import { radiansPerSecondToRpm } from '../units/conversions'
 import { displayUnit, type Quantity, type UnitSystem } from '../units/display'
 import { plainText } from '../units/numerals'
 import { exampleText, type Evaluation, type TypedUnit } from '../units/parse-quantity'
+import { ZERO_CELSIUS_K } from '../units/temperature'
 import { listTokens, type Token } from './tokens'
 import { DIMENSION_WORDS, DIMENSIONS, NEEDS, UNITS, type Dimension, type UnitOfMeasure } from './unit-words'
 
@@ -172,8 +173,7 @@ function readTemperature(tokens: readonly Token[], system: UnitSystem): Evaluati
 
 function onScale(reading: number, sign: string): { si: number; unit: TypedUnit } {
   if (sign === 'K') {
-    const zeroC = 273.15
-    return { si: reading - zeroC, unit: { sign, fromSi: (si) => si + zeroC } }
+    return { si: reading - ZERO_CELSIUS_K, unit: { sign, fromSi: (si) => si + ZERO_CELSIUS_K } }
   }
   const scale = displayUnit('temperature', sign === '°F' ? 'us' : 'metric')
   return { si: scale.fromDisplay(reading), unit: { sign: scale.unit, fromSi: scale.toDisplay } }

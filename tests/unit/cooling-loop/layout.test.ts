@@ -5,6 +5,7 @@ import { groupLoop } from '../../../shared/cooling-loop/edit'
 import { overlaps, type Point, type Rect } from '../../../shared/cooling-loop/geometry'
 import { layoutLoop } from '../../../shared/cooling-loop/layout'
 import type { LoopLayout, Pipe, Position } from '../../../shared/cooling-loop/layout-types'
+import type { Cooler } from '../../../shared/schemas/heat-input'
 import { anyLoop } from './arbitrary-loop'
 
 const at = (position: Position, parallelWithPrevious = false) => ({ position, parallelWithPrevious })
@@ -118,7 +119,7 @@ describe('for any loop and any width', () => {
     bypass: fc.boolean(),
   })
   const forAny = (
-    check: (layout: LoopLayout, asked: { coolers: readonly { position: Position }[]; width: number }) => void,
+    check: (layout: LoopLayout, asked: { coolers: readonly Cooler[]; width: number }) => void,
   ) =>
     fc.assert(
       fc.property(request, (asked) => check(layoutLoop(asked), asked)),
