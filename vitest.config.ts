@@ -26,6 +26,8 @@ const nodeProject = (
 /** Projects by what they need: nothing, a Vue environment, PostgreSQL, a served application, a browser. */
 export default defineConfig({
   test: {
+    // Both cores of a small machine: nothing else runs beside the tests.
+    maxWorkers: '100%',
     projects: [
       nodeProject('unit', {
         include: ['tests/unit/**/*.test.ts', 'tests/model/**/*.test.ts'],
