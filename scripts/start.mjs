@@ -16,6 +16,7 @@ import { rootFolder as root } from './lib/paths.mjs'
 import { portProblem } from './lib/ports.mjs'
 import { createProgress } from './lib/progress.mjs'
 import { CommandFailed, endRunning, Interrupted, lastLines, run, tellingLines } from './lib/run.mjs'
+import { loadSecrets } from './lib/secrets.mjs'
 import { claimStart } from './lib/single-start.mjs'
 
 const DEMO_PEOPLE = [
@@ -110,15 +111,15 @@ async function start() {
     LONGPULL_DEMO: settings.demo ? '1' : '0',
     NUXT_TELEMETRY_DISABLED: '1',
     PUBLIC_URL: settings.publicUrl,
-    ...(settings.demo && database !== undefined && !process.env.NUXT_SESSION_PASSWORD
-      ? { NUXT_SESSION_PASSWORD: database.secrets.session }
+    ...(settings.demo && !process.env.NUXT_SESSION_PASSWORD
+      ? { NUXT_SESSION_PASSWORD: loadSecrets(join(root, '.data', 'secrets.json')).session }
       : {}),
     ...(database === undefined
       ? {}
       : {
-          DATABASE_URL: database.cluster.url('app', 'longpull'),
-          DATABASE_OWNER_URL: database.cluster.url('owner', 'longpull'),
-          DATABASE_BACKUP_URL: database.cluster.url('backup', 'longpull'),
+          DATABASE_URL: database.url('app', 'longpull'),
+          DATABASE_OWNER_URL: database.url('owner', 'longpull'),
+          DATABASE_BACKUP_URL: database.url('backup', 'longpull'),
         }),
   }
   await runScript('Bringing the tables up to date', 'migrate.ts', env)
@@ -223,6 +224,8 @@ function announce(settings, logFile) {
     progress.write('  Sign in with the password longpull-demo as')
     for (const [email, who] of DEMO_PEOPLE) progress.write(`    ${email?.padEnd(28)} ${who}`)
     progress.write('')
+    if (!loopbackOnly)
+      progress.write('  Whoever can reach this machine can sign in so; LONGPULL_DEMO=0 serves without.')
   }
   if (loopbackOnly) progress.write('  Only this machine can reach it; HOST=0.0.0.0 opens it to others.')
   if (logFile !== undefined) progress.write(`  Its log is in ${logFile}`)

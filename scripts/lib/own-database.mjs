@@ -45,7 +45,7 @@ export async function startOwnDatabase({ root, progress, onStop }) {
     const cluster = await startCluster(plan)
     writePrivate(stateFile, `${JSON.stringify({ folder, port: cluster.port })}\n`)
     await cluster.ensureDatabase('longpull')
-    return { cluster, secrets }
+    return cluster
   })
 }
 

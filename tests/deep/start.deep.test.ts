@@ -249,7 +249,7 @@ describe('npm start', () => {
   describe('with a database of its own choosing', () => {
     let env: Record<string, string>
     beforeAll(async () => {
-      env = { ...(await createTestDatabase({ content: 'empty' })).env, NUXT_SESSION_PASSWORD: 'x'.repeat(40) }
+      env = { ...(await createTestDatabase({ content: 'empty' })).env }
     })
 
     it('starts no server, and migrates and fills the one that is named', async () => {
