@@ -128,6 +128,7 @@ export function useNewBuild() {
   onMounted(async () => {
     card.value = readCard() ?? { ...card.value, ids: newIds() }
     void shown.startHere()
+    shown.deepen()
     try {
       coolers.value = (await api<CatalogueCoolerList>('/api/coolers')).coolers
     } catch (error) {

@@ -77,10 +77,6 @@ export function useWorkbenchAnswer(
     if (answer.value) evidence.order(withExtras())
   }
 
-  // Where the page came without the deeper look (a build that was just made), it is asked for once it is alive.
-  onMounted(() => {
-    if (answer.value && evidence.depth.value === null && !options.gradesOnly) deepen()
-  })
   onScopeDispose(() => clearTimeout(timer))
 
   const { grades, depth, upToDate } = evidence

@@ -90,11 +90,13 @@ export function useWorkbench(opened: {
   onMounted(async () => {
     try {
       coolers.value = (await api<CatalogueCoolerList>('/api/coolers')).coolers
-      if (!shown.depth.value?.parts) shown.deepen()
     } catch (error) {
       // Without the catalogue everything else still stands; the list of parts says that it is not there.
       if (!(error instanceof ApiError)) throw error
+      coolers.value = []
     }
+    // The server sent what is quick; the rest is worked out here, the parts with it.
+    shown.deepen()
   })
 
   provideEditor({

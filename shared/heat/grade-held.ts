@@ -35,7 +35,13 @@ function brokenLimit(runner: GradeRunner, limits: GradeHeldRequest['limits'], gr
  */
 export function findGradeHeld(request: GradeHeldRequest): GradeHeld {
   const maxGrade = request.maxGrade ?? DEFAULT_MAX_GRADE
-  const runner = new GradeRunner(makeTruck(request.input), request.speedMps, request.segment, request.climb)
+  const runner = new GradeRunner(
+    makeTruck(request.input),
+    request.speedMps,
+    request.segment,
+    request.climb,
+    request.foot,
+  )
   const broken = (grade: number) => brokenLimit(runner, request.limits, grade)
   const flat = broken(0)
   if (flat !== 'none') return { grade: null, endedBy: flat }

@@ -1,6 +1,6 @@
 import type { Climb, RoadConditions, SweepRequest } from '../schemas/estimate'
 import { AppError } from '../errors'
-import { COOLANT, CONVERTER, SUMP } from './balances'
+import { CASE, COOLANT, CONVERTER, SUMP } from './balances'
 import type { ThermalPoint } from './balances'
 import { equilibriumOf } from './equilibrium'
 import { integrate } from './integrator'
@@ -9,7 +9,7 @@ import type { OperatingPoint } from './operating-point'
 import { resolveStart } from './resolve'
 import { makeThermal, makeTruck, startTemperatures } from './truck'
 import type { Truck } from './truck'
-import type { Sweep, SweepAnswerPoint, SweepPoint } from './types'
+import type { FootOfClimb, Sweep, SweepAnswerPoint, SweepPoint } from './types'
 
 /** Temperature over grade, at equilibrium or at the top of a climb. */
 
@@ -23,7 +23,13 @@ export class GradeRunner {
   private readonly thermal: ThermalPoint
   private guess: Float64Array
 
-  constructor(truck: Truck, speedMps: number, segment: RoadConditions = {}, climb?: Climb) {
+  constructor(
+    truck: Truck,
+    speedMps: number,
+    segment: RoadConditions = {},
+    climb?: Climb,
+    foot?: FootOfClimb,
+  ) {
     this.truck = truck
     this.speedMps = speedMps
     this.segment = segment
@@ -32,6 +38,12 @@ export class GradeRunner {
     this.start = startTemperatures(
       climb?.start === undefined ? truck.resolved.start : resolveStart(climb.start, ambientC),
     )
+    if (foot !== undefined) {
+      this.start[SUMP] = foot.sumpC
+      this.start[CONVERTER] = foot.coolerInletC
+      this.start[CASE] = foot.caseC
+      this.start[COOLANT] = foot.coolantC
+    }
     this.guess = this.start
     this.thermal = makeThermal(truck)
   }
@@ -82,11 +94,19 @@ export class GradeRunner {
 /**
  * Temperatures over grade at one speed.
  * @param request - input, speed, grades, road conditions; with `climb` at the top of a climb, without it at equilibrium
+ * @param foot - with `climb`: where the drive before it has left every temperature, in place of the climb's start, which
+ *   takes converter and case to be as warm as the pan
  * @returns a point per grade; a grade that cannot be climbed says so
  * @throws AppError rating_impossible, model_refuses
  */
-export function sweep(request: SweepRequest): Sweep {
-  const runner = new GradeRunner(makeTruck(request.input), request.speedMps, request.segment, request.climb)
+export function sweep(request: SweepRequest, foot?: FootOfClimb): Sweep {
+  const runner = new GradeRunner(
+    makeTruck(request.input),
+    request.speedMps,
+    request.segment,
+    request.climb,
+    foot,
+  )
   return {
     points: request.grades.map((grade, index): SweepPoint => {
       try {

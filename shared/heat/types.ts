@@ -180,6 +180,9 @@ export interface Replay {
   contradictedSamples: number
 }
 
+/** All coupled temperatures at the foot of a climb that begins in the middle of a drive; a `State` has them. */
+export type FootOfClimb = Pick<State, 'sumpC' | 'coolerInletC' | 'caseC' | 'coolantC'>
+
 /** What `findGradeHeld` may end at. */
 export type GradeLimit = 'sumpC' | 'coolerInletC' | 'speed' | 'none'
 
@@ -189,6 +192,8 @@ export interface GradeHeldRequest {
   limits: { sumpC?: number; coolerInletC?: number }
   /** With it temperatures are those at the top of a climb of that length, without it at equilibrium. */
   climb?: Climb
+  /** In place of the climb's start: where the drive before it has left every temperature. */
+  foot?: FootOfClimb
   segment?: RoadConditions
   /** Steepest grade looked at; 0.3 unless asked otherwise. */
   maxGrade?: number

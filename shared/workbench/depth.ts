@@ -5,7 +5,7 @@ import { deriveInputs } from '../build-sheet/setups'
 import { listSpreads } from '../build-sheet/spreads'
 import type { GradeBandPoint, GradeChartData, GradeSeries } from '../charts/grade-chart'
 import { AppError } from '../errors'
-import { estimate, sizing, sweep } from '../heat'
+import { estimate, sizing } from '../heat'
 import type { TargetName } from '../heat/types'
 import type { CatalogueCooler } from '../schemas/catalogue-cooler'
 import {
@@ -18,7 +18,7 @@ import {
 import { milesPerHourToMetersPerSecond } from '../units/conversions'
 import { differenceF, differenceFToK } from '../units/temperature'
 import type { Answer } from './answer'
-import { climbOfInput, computeOtherCurves, gradeHeld } from './grade-evidence'
+import { askGrades, climbOfInput, computeOtherCurves, gradeHeld } from './grade-evidence'
 import { findHill } from './hill'
 import type { DepthRequest, WorkbenchRequest, WorkbenchSetup } from './request'
 
@@ -26,8 +26,6 @@ import type { DepthRequest, WorkbenchRequest, WorkbenchSetup } from './request'
 export interface PeakBands {
   sumpC: { low: number; high: number }
   coolerInletC: { low: number; high: number }
-  /** Of the grade that is held; null where none is, or every grade looked at is. */
-  heldGrade: { low: number; high: number } | null
   /** The largest doubts of the place that decides, in words, with their share of the variance. */
   doubts: { words: string; share: number }[]
 }
@@ -98,6 +96,8 @@ export interface SetupRow {
 /** Everything under the answer that takes longer than a keystroke. */
 export interface Depth {
   bands: PeakBands
+  /** Of the grade that is held; null where none is, or every grade looked at is. */
+  heldBand: { low: number; high: number } | null
   gradeBand: GradeBandPoint[]
   otherCurves: GradeSeries[]
   fluid: FluidEvidence
@@ -110,20 +110,32 @@ export interface Depth {
 /** One part of the deeper look; the caller may breathe, or give up, between two of them. */
 export type DepthStage = (request: DepthRequest, answer: Answer, grades: GradeChartData) => Partial<Depth>
 
-/** In the order in which a person looks. */
-export const DEPTH_STAGES: readonly DepthStage[] = [
-  (request, _answer, grades) => ({ bands: computePeakBands(request, grades) }),
+/** Quick enough to come with the page from the server. */
+const QUICK_STAGES: readonly DepthStage[] = [
+  (request) => ({ bands: computePeakBands(request) }),
   (request, _answer, grades) => ({ otherCurves: computeOtherCurves(request, grades) }),
-  (request, _answer, grades) => ({ gradeBand: computeGradeBand(request, grades) }),
   (request) => ({ setups: computeSetups(request), alternatives: computeAlternatives(request) }),
   (request) => ({ fluid: computeFluid(request) }),
+]
+
+/** Left to the browser's worker: together they take several times as long as all the rest of a page. */
+const LONG_STAGES: readonly DepthStage[] = [
   (request) => ({ sizing: computeSizing(request) }),
+  (request, _answer, grades) => ({ gradeBand: computeGradeBand(request, grades) }),
+  (request, _answer, grades) => ({ heldBand: computeHeldBand(request, grades) }),
   (request) => (request.coolers === null ? {} : { parts: computeParts(request, request.coolers) }),
 ]
 
-/** The whole of it at once, as the server needs it. */
-export function computeDepth(request: DepthRequest, answer: Answer, grades: GradeChartData): Partial<Depth> {
-  return DEPTH_STAGES.reduce<Partial<Depth>>(
+/** In the order in which a person looks. */
+export const DEPTH_STAGES: readonly DepthStage[] = [...QUICK_STAGES, ...LONG_STAGES]
+
+/** What of it comes with the page. */
+export function computeQuickDepth(
+  request: DepthRequest,
+  answer: Answer,
+  grades: GradeChartData,
+): Partial<Depth> {
+  return QUICK_STAGES.reduce<Partial<Depth>>(
     (depth, stage) => ({ ...depth, ...stage(request, answer, grades) }),
     {},
   )
@@ -131,10 +143,9 @@ export function computeDepth(request: DepthRequest, answer: Answer, grades: Grad
 
 const MOST_DOUBTS = 4
 
-function computePeakBands(request: DepthRequest, grades: GradeChartData): PeakBands {
+function computePeakBands(request: DepthRequest): PeakBands {
   const { judged } = deriveInputs(request)
-  const spreads = listSpreads(request.sheet)
-  const bands = simpleBand({ input: judged, spreads })
+  const bands = simpleBand({ input: judged, spreads: listSpreads(request.sheet) })
   const span = ({ low, high }: Band) => ({ low: round(low, 2), high: round(high, 2) })
   const decidedBy = judgeAnswer(
     { peakSumpC: bands.peakSumpC.value, peakCoolerInletC: bands.peakCoolerInletC.value },
@@ -144,7 +155,6 @@ function computePeakBands(request: DepthRequest, grades: GradeChartData): PeakBa
   return {
     sumpC: span(bands.peakSumpC),
     coolerInletC: span(bands.peakCoolerInletC),
-    heldGrade: heldGradeBand(judged, spreads, request, grades),
     doubts: decider.parts
       .filter(({ share }) => share > 0.01)
       .slice(0, MOST_DOUBTS)
@@ -153,19 +163,15 @@ function computePeakBands(request: DepthRequest, grades: GradeChartData): PeakBa
 }
 
 /** How sure the grade is that is held: the same doubts, each moved alone. */
-function heldGradeBand(
-  judged: HeatInput,
-  spreads: ReturnType<typeof listSpreads>,
-  request: DepthRequest,
-  grades: GradeChartData,
-): PeakBands['heldGrade'] {
+function computeHeldBand(request: DepthRequest, grades: GradeChartData): Depth['heldBand'] {
   if (grades.held.grade === null || grades.held.endedBy === 'none') return null
-  const hill = findHill(judged.duty)
-  const climb = climbOfInput(judged)
+  const { judged } = deriveInputs(request)
   const { heldGrade } = simpleBand({
     input: judged,
-    spreads,
-    measure: (input: HeatInput) => ({ heldGrade: gradeHeld(input, hill, climb, request.limits).grade ?? 0 }),
+    spreads: listSpreads(request.sheet),
+    measure: (input: HeatInput) => ({
+      heldGrade: gradeHeld(input, findHill(input.duty), climbOfInput(input), request.limits).grade ?? 0,
+    }),
   })
   return { low: round(Math.max(0, heldGrade.low), 4), high: round(heldGrade.high, 4) }
 }
@@ -179,34 +185,23 @@ function computeGradeBand(request: DepthRequest, grades: GradeChartData): GradeB
   if (present === undefined) return []
   const asked = bandGrades(present)
   if (asked.length === 0) return []
-  const hill = findHill(judged.duty)
-  const climb = climbOfInput(judged)
   const bands = simpleBand({
     input: judged,
     spreads: listSpreads(request.sheet),
     measure: (input: HeatInput): Record<string, number> => {
-      const { points } = sweep({
-        input,
-        speedMps: hill.speedMps,
-        grades: asked,
-        segment: hill.road,
-        ...(climb ? { climb } : {}),
-      })
+      const hill = findHill(input.duty)
+      const points = askGrades(input, { hill, climb: climbOfInput(input), maxGrade: grades.maxGrade }, asked)
       return Object.fromEntries(
-        points.flatMap((point, index) =>
-          'error' in point
-            ? []
-            : [
-                [`sump${index}`, point.sumpC],
-                [`line${index}`, point.coolerInletC],
-              ],
-        ),
+        points.flatMap((point) => [
+          [`sump${point.grade}`, point.sumpC],
+          [`line${point.grade}`, point.coolerInletC],
+        ]),
       )
     },
   })
-  return asked.flatMap((grade, index) => {
-    const sumpC = bands[`sump${index}`]
-    const coolerInletC = bands[`line${index}`]
+  return asked.flatMap((grade) => {
+    const sumpC = bands[`sump${grade}`]
+    const coolerInletC = bands[`line${grade}`]
     if (!isWhole(sumpC) || !isWhole(coolerInletC)) return []
     return [
       {

@@ -4,7 +4,7 @@ import type { GradeChartData, GradeHeldSummary, GradePoint, GradeSeries } from '
 import type { RungLimit } from '../charts/rungs'
 import { AppError } from '../errors'
 import { estimate, findGradeHeld, sweep } from '../heat'
-import type { State } from '../heat/types'
+import type { FootOfClimb } from '../heat/types'
 import type { Climb } from '../schemas/estimate'
 import type { HeatInput } from '../schemas/heat-input'
 import type { Limits, Place } from '../schemas/limits'
@@ -98,40 +98,44 @@ export function computeOtherCurves(request: WorkbenchRequest, evidence: GradeCha
   })
 }
 
-/** The climb as the drive cycle meets it: its length, and the temperatures at its foot. */
-function climbOf(hill: Hill, answer: Answer): Climb | undefined {
+/** A climb as a drive cycle meets it: its length, and where the drive before it has left every temperature. */
+export interface MetClimb {
+  distanceM: number
+  start?: Climb['start']
+  foot?: FootOfClimb
+}
+
+/** The hill's climb from the answer that is there already. */
+function climbOf(hill: Hill, answer: Answer): MetClimb | undefined {
   if (hill.index === undefined || hill.distanceM === undefined) return undefined
-  const before: State | undefined = answer.judged.segments[hill.index - 1]?.end
-  const { sumpC, axleC, coolantC } = answer.judged.series
-  const start = before ?? { sumpC: sumpC[0], axleC: axleC[0], coolantC: coolantC[0] }
+  const foot = answer.judged.segments[hill.index - 1]?.end
+  return { distanceM: hill.distanceM, ...(foot ? { foot } : startOf(answer.input)) }
+}
+
+/** The climb of an input of its own, which meets the hill from its own approach. */
+export function climbOfInput(input: HeatInput): MetClimb | undefined {
+  const hill = findHill(input.duty)
+  if (hill.index === undefined || hill.distanceM === undefined) return undefined
+  if (hill.index === 0) return { distanceM: hill.distanceM, ...startOf(input) }
+  const segments = input.duty.segments.slice(0, hill.index)
+  const foot = estimate({ ...input, duty: { ...input.duty, segments } }).segments.at(-1)?.end
+  return { distanceM: hill.distanceM, ...(foot ? { foot } : {}) }
+}
+
+const startOf = ({ duty }: HeatInput): Pick<MetClimb, 'start'> =>
+  duty.start === undefined ? {} : { start: duty.start }
+
+/** The climb as the model's calls take it. */
+function asked(climb: MetClimb | undefined): { climb?: Climb } {
+  if (climb === undefined) return {}
   return {
-    distanceM: hill.distanceM,
-    start: { sumpC: start.sumpC, coolantC: start.coolantC, axleC: start.axleC },
+    climb: { distanceM: climb.distanceM, ...(climb.start === undefined ? {} : { start: climb.start }) },
   }
 }
 
-/** The climb of an input of its own: it meets the hill from its own approach. */
-export function climbOfInput(input: HeatInput): Climb | undefined {
-  const hill = findHill(input.duty)
-  if (hill.index === undefined || hill.distanceM === undefined) return undefined
-  return { distanceM: hill.distanceM, ...optionalStart(footOfHill(input, hill.index)) }
-}
-
-function footOfHill(input: HeatInput, index: number): Climb['start'] {
-  if (index === 0) return input.duty.start
-  const approach = estimate({
-    ...input,
-    duty: { ...input.duty, segments: input.duty.segments.slice(0, index) },
-  })
-  const foot = approach.segments.at(-1)?.end
-  return foot && { sumpC: foot.sumpC, coolantC: foot.coolantC, axleC: foot.axleC }
-}
-
-const optionalStart = (start: Climb['start']): Pick<Climb, 'start'> => (start === undefined ? {} : { start })
-
 interface CurveRequest {
   hill: Hill
-  climb: Climb | undefined
+  climb: MetClimb | undefined
   maxGrade: number
 }
 
@@ -142,14 +146,11 @@ export function gradeCurve(input: HeatInput, request: CurveRequest): GradePoint[
   return withJumpsFound(points, input, request)
 }
 
-function askGrades(input: HeatInput, { hill, climb }: CurveRequest, grades: number[]): GradePoint[] {
-  const { points } = sweep({
-    input,
-    speedMps: hill.speedMps,
-    grades,
-    segment: hill.road,
-    ...(climb ? { climb } : {}),
-  })
+export function askGrades(input: HeatInput, { hill, climb }: CurveRequest, grades: number[]): GradePoint[] {
+  const { points } = sweep(
+    { input, speedMps: hill.speedMps, grades, segment: hill.road, ...asked(climb) },
+    climb?.foot,
+  )
   return points.flatMap((point) =>
     'error' in point
       ? []
@@ -197,7 +198,7 @@ function withJumpsFound(points: GradePoint[], input: HeatInput, request: CurveRe
 export function gradeHeld(
   input: HeatInput,
   hill: Hill,
-  climb: Climb | undefined,
+  climb: MetClimb | undefined,
   limits: Limits,
 ): GradeHeldSummary {
   const found = findGradeHeld({
@@ -206,7 +207,8 @@ export function gradeHeld(
     limits: targetsOfLimits(limits),
     segment: hill.road,
     maxGrade: STEEPEST_GRADE,
-    ...(climb ? { climb } : {}),
+    ...asked(climb),
+    ...(climb?.foot ? { foot: climb.foot } : {}),
   })
   return { grade: found.grade, endedBy: found.endedBy, maxGrade: STEEPEST_GRADE }
 }

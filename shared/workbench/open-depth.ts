@@ -1,13 +1,12 @@
 import type { BuildAnswer } from '../schemas/build'
 import { computeAnswer } from './answer'
-import { computeDepth, type Depth } from './depth'
+import { computeQuickDepth, type Depth } from './depth'
 import { computeGradeEvidence } from './grade-evidence'
 import { MOST_OTHERS } from './request'
 
 /**
  * The deeper look of a saved build as its page first shows it: the first set-up, the others beside it. Null where there is
- * no such scenario, or the model has no answer for it; the page then says so. The parts of the catalogue are left to the
- * browser: they stand far down, and would be half of what the page has to carry.
+ * no such scenario, or the model has no answer for it; the page then says so.
  */
 export function openDepth(answer: BuildAnswer, scenarioId: string): Partial<Depth> | null {
   const { build, setups, scenarios } = answer
@@ -25,5 +24,5 @@ export function openDepth(answer: BuildAnswer, scenarioId: string): Partial<Dept
   }
   const first = computeAnswer(request)
   if (first.kind === 'refusal') return null
-  return computeDepth(request, first, computeGradeEvidence(request, first))
+  return computeQuickDepth(request, first, computeGradeEvidence(request, first))
 }
