@@ -12,7 +12,7 @@ const MULTIPLE = Number(process.env['PROPERTY_RUNS'] ?? '1')
 const SEED = Number(process.env['PROPERTY_SEED'] ?? '20260117')
 
 /** Time a test with that many runs may take [ms]. */
-export const PROPERTY_TIMEOUT_MS = 20_000 * Math.max(1, MULTIPLE)
+export const PROPERTY_TIMEOUT_MS = 60_000 * Math.max(1, MULTIPLE)
 
 /** Asserts that a property holds for `runs` drawn inputs (times PROPERTY_RUNS). */
 export function holdsFor<T>(runs: number, drawn: fc.Arbitrary<T>, property: (value: T) => void) {
