@@ -13,9 +13,10 @@ const FAMILIAR_K = 12
 /** How near the coolant must come to rest for a look at the sump [K], and how long it may take. */
 const COOLANT_CLOSE_K = 1e-2
 const COOLANT_STEPS = 20
-/** A long integration doubles its span from here [s] until nothing moves. */
+/** A long integration has four times its span each time, from here to there [s], until nothing moves. */
 const FIRST_SPAN_S = 2000
-const LONGEST_SPAN_S = 1e9
+const LONGEST_SPAN_S = 1e6
+const SETTLING_TOLERANCE_K = 0.1
 /** Rate at which nothing moves any more [K/s]. */
 const STILL_K_S = 1e-9
 
@@ -102,18 +103,16 @@ function isNextRest(thermal: ThermalPoint, fromSumpC: number, sumpC: number, coo
   return true
 }
 
-/** Follows the truck itself until nothing moves. */
+/**
+ * Follows the truck itself until the way to the next resting place is clear. One that circles for ever (gelled oil behind a
+ * boiling converter) is left where it is then.
+ */
 function settleByTime(thermal: ThermalPoint, from: ArrayLike<number>): [number, number] {
   const state = Float64Array.from(from)
   for (let span = FIRST_SPAN_S; span < LONGEST_SPAN_S; span *= 4) {
-    integrate(thermal, state, span, () => undefined, 0.05)
+    integrate(thermal, state, span, () => undefined, SETTLING_TOLERANCE_K)
     const polished = newton(thermal, state[SUMP]!, state[COOLANT]!)
-    if (
-      polished !== undefined &&
-      Math.abs(polished[0] - state[SUMP]!) < 1 &&
-      Math.abs(polished[1] - state[COOLANT]!) < 1
-    )
-      return polished
+    if (polished !== undefined && isNextRest(thermal, state[SUMP]!, polished[0], polished[1])) return polished
     thermal.rates(state, rates)
     if (rates.every((rate) => Math.abs(rate) < STILL_K_S)) break
   }
