@@ -29,13 +29,14 @@ import {
   setupRemedy,
   shiftForTow,
   slowDown,
+  slowerThan,
   takeLowRange,
 } from './driving-remedies'
 import { draft, type Sign } from './sign'
 import { type Answered, isAnswered, type Situation } from './situation'
 import { peakCoolantC } from './trials'
 import type { Advice, Remedy, Severity } from './types'
-import { figure, heat, ordinal, speed, temperature, type Words, words } from './words'
+import { figure, heat, joinWords, ordinal, speed, temperature, type Words, words } from './words'
 
 /** What can be read off an answer without another run of the model. */
 
@@ -45,7 +46,7 @@ const SEVERITIES: Record<WarningCode, Severity> = {
   coolant_hot: 'ease-off',
   coolant_over_limit: 'stop',
   hot_line_over_limit_pan_fine: 'ease-off',
-  unlocked_other_gear_cooler: 'watch',
+  unlocked_other_gear_cooler: 'note',
   grade_above_validated_range: 'note',
   limited_by_oil_flow: 'note',
   rating_misfit: 'watch',
@@ -57,12 +58,8 @@ const SEVERITIES: Record<WarningCode, Severity> = {
   engine_power_exceeds_torque: 'watch',
 }
 
-/** Judged here by the shop's own limits, or by runs of the model, and not by the usual ones the model knows. */
-const JUDGED_ELSEWHERE: readonly WarningCode[] = [
-  'hot_line_over_limit_pan_fine',
-  'unlocked_other_gear_cooler',
-  'cooler_flow_low',
-]
+/** Judged here by the shop’s own limits and by the flow test, and not by the usual ones the model knows. */
+const JUDGED_ELSEWHERE: readonly WarningCode[] = ['hot_line_over_limit_pan_fine', 'cooler_flow_low']
 
 /** Below this outside air it is winter, and a cold pan may keep the converter unlocked (50 °F); common practice, no source. */
 const COLD_AIR_C = 10
@@ -72,7 +69,7 @@ const REMEDIES: Record<WarningCode, (situation: Situation, warning: Warning) => 
   coolant_hot: coolantRemedies,
   coolant_over_limit: coolantRemedies,
   hot_line_over_limit_pan_fine: driveDifferently,
-  unlocked_other_gear_cooler: driveDifferently,
+  unlocked_other_gear_cooler: shiftForTow,
   grade_above_validated_range: (situation) => [...takeLowRange(situation), ...pullLess(situation)],
   limited_by_oil_flow: (situation) => [
     ...sideBySide(situation),
@@ -113,11 +110,15 @@ export const modelWarnings: Sign = (situation) => {
   if (!isAnswered(situation)) return []
   const byCode = new Map<WarningCode, Warning[]>()
   for (const warning of situation.answer.judged.warnings) {
-    if (JUDGED_ELSEWHERE.includes(warning.code)) continue
+    if (JUDGED_ELSEWHERE.includes(warning.code) || isTried(situation, warning)) continue
     byCode.set(warning.code, [...(byCode.get(warning.code) ?? []), warning])
   }
   return [...byCode.values()].flatMap((warnings) => warningAdvice(situation, warnings))
 }
+
+/** Where the limits do not hold, other ways to drive are run and compared, which says more than their heat. */
+const isTried = ({ answer }: Answered, { code }: Warning): boolean =>
+  code === 'unlocked_other_gear_cooler' && answer.judgement.judgement !== 'fine'
 
 function warningAdvice(situation: Answered, warnings: readonly Warning[]): Advice[] {
   const [worst, ...others] = [...warnings].sort((a, b) => exceeding(b) - exceeding(a))
@@ -128,7 +129,9 @@ function warningAdvice(situation: Answered, warnings: readonly Warning[]): Advic
   return [
     draft(code, severityOf(situation, code), textOf(situation, worst), {
       ...actionOf(situation, worst),
-      ...(value === undefined ? {} : { value: figure(value, quantity) }),
+      ...(value === undefined
+        ? {}
+        : { value: figure(code === 'coolant_heats_oil' ? -value : value, quantity) }),
       ...(limit === undefined ? {} : { limit: figure(limit, quantity) }),
       ...(at === undefined ? {} : { at: placeOf(at) }),
       ...(alsoAt.length === 0 ? {} : { alsoAt }),
@@ -252,30 +255,36 @@ export const noCoolerNeeded: Sign = (situation) => {
   ]
 }
 
+/** What the model cannot drive, in words. */
+const CANNOT: Readonly<Record<string, string>> = {
+  cannot_climb_grade: 'No gear climbs this at any speed.',
+  cannot_pull_away: 'No gear pulls away from a stop here.',
+  cannot_hold_cruise: 'No gear holds the cruise speed between the stops.',
+}
+
 /** The truck cannot drive what is asked for: there is no answer. */
 export const cannotClimb: Sign = (situation) => {
-  const { refusal } = situation
-  const codes = ['cannot_climb_grade', 'cannot_pull_away', 'cannot_hold_cruise']
-  if (refusal === null || !codes.includes(refusal.code)) return []
+  const { refusal, request } = situation
+  const text = refusal === null ? undefined : CANNOT[refusal.code]
+  if (refusal === null || text === undefined) return []
   const index = Number(/segments\.(\d+)/.exec(refusal.issues[0]?.path ?? '')?.[1] ?? Number.NaN)
-  const segment = situation.request.scenario.duty.segments[index]
+  const segment = request.scenario.duty.segments[index]
   const grade = segment !== undefined && 'grade' in segment ? segment.grade : undefined
+  const cruiseMps = segment?.kind === 'stopGo' ? segment.speedMps : undefined
   return [
-    draft('cannot_climb', 'stop', words`${capital(refusal.message)}: not at any speed, in any gear.`, {
+    draft('cannot_climb', 'stop', [text], {
       action: words`Take low range, a lighter load or another road; check weight, axle ratio and tire on the sheet.`,
       ...(grade === undefined ? {} : { value: figure(grade, 'grade') }),
       ...(segment === undefined ? {} : { at: `duty.segments.${index}` }),
       remedies: [
         ...takeLowRange(situation),
+        ...(cruiseMps === undefined ? [] : slowerThan(situation, cruiseMps)),
         ...pullLess(situation),
         ...shiftForTow(situation),
-        ...airConditioningOff(situation),
       ],
     }),
   ]
 }
-
-const capital = (text: string): string => text.charAt(0).toUpperCase() + text.slice(1)
 
 /** Below this nobody would notice whether it locks [K]. */
 const LOCKUP_MATTERS_K = 3
@@ -322,7 +331,7 @@ export const lockupContradicted: Sign = (situation) => {
     draft(
       'lockup_contradicted',
       'watch',
-      words`Lock-up counts as seen on the road, but ${reasons.join(', ')}.`,
+      words`Lock-up counts as seen on the road, but ${joinWords(reasons)}.`,
       {
         action: words`Look again on the road. Until then, read the answer as if it never locks.`,
         remedies: input.build.converter.lockup?.fitted === true ? [neverLocks] : [],
@@ -398,7 +407,7 @@ function reasonWords({ input }: Answered, before: State, later: State): string {
   ]
   return reasons.length === 0
     ? 'a hotter line gives off more, and the oil comes back cooler'
-    : reasons.join(', and ')
+    : joinWords(reasons)
 }
 
 /** A cooler in front of the radiator is worth a look only from here on [°C], 5 K under what counts as hot. Judgement. */

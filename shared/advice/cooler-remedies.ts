@@ -80,7 +80,10 @@ export function countAsGeneric({ input }: Situation, index: number): Remedy[] {
   const coolers = coolersOf(input)
   const cooler = coolers[index]
   if (cooler === undefined) return []
-  const label = words`Count ${cooler.name} as a usual ${CONSTRUCTION_WORDS[cooler.construction]} core of its size`
+  const usual = isInAir(cooler)
+    ? `a usual ${CONSTRUCTION_WORDS[cooler.construction]} core of its size`
+    : 'a usual cooler in a radiator tank'
+  const label = words`Count ${cooler.name} as ${usual}`
   return [coolersRemedy(`generic-${index}`, label, coolers.with(index, genericLike(cooler)))]
 }
 

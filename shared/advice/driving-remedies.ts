@@ -8,7 +8,7 @@ import { figure, ordinal, speed, type Words, words } from './words'
 
 /** What can be done without buying anything. None of it is computed here; see `Trials`. */
 
-export const SLOWER_BY_MPS = milesPerHourToMetersPerSecond(5)
+const SLOWER_BY_MPS = milesPerHourToMetersPerSecond(5)
 /** A crawl is not made slower: 5 mph would be most of it (20 mph). */
 const SLOWER_FROM_MPS = milesPerHourToMetersPerSecond(20)
 /** Share of a trailer's load left at home, as an example. */
@@ -38,9 +38,15 @@ export function gearOnHill({ answer, hill }: Situation): number | undefined {
   return hill.index === undefined ? undefined : answer?.judged.segments[hill.index]?.gear
 }
 
-/** Lock it: only where a clutch is there that was not seen to close. */
+/** Less than this nobody can tell from nothing [K]. */
+const NOTHING_K = 0.5
+
+/** Lock it: only where a clutch is there that was not seen to close, and closing it would change something. */
 export function lockIt({ answer }: Situation): Remedy[] {
-  if (answer?.ifLocked === null || answer === null) return []
+  if (answer === null || answer.ifLocked === null) return []
+  const { judged, ifLocked } = answer
+  const gainsK = [judged.peakSumpC - ifLocked.peakSumpC, judged.peakCoolerInletC - ifLocked.peakCoolerInletC]
+  if (Math.max(...gainsK) < NOTHING_K) return []
   return [
     setupRemedy('lock', words`Prove lock-up, so that the converter locks where it may`, { lockup: 'always' }),
   ]
@@ -67,18 +73,20 @@ function engineStands({ input, answer, hill }: Situation, gear: number): boolean
   return radiansPerSecondToRpm(shaftSpeed) <= SPEED_RESERVE * engine.redlineRpm
 }
 
-/** Slow down by 5 mph from the speed the truck holds there. */
+/** Slow down by 5 mph from the speed the truck holds on the hardest stretch. */
 export function slowDown(situation: Situation): Remedy[] {
-  const slowerMps = slowerSpeed(situation)
-  if (slowerMps === undefined) return []
-  const label = words`Slow down by ${speed(SLOWER_BY_MPS)} ${where(situation)}, to ${speed(slowerMps)}`
-  return [setupRemedy('slow-down', label, { speedMps: slowerMps })]
+  const { answer, hill } = situation
+  if (hill.index === undefined) return []
+  const drivenMps = answer?.judged.segments[hill.index]?.speedMps ?? hill.speedMps
+  return slowerThan(situation, Math.min(drivenMps, hill.speedMps))
 }
 
-function slowerSpeed({ answer, hill }: Situation): number | undefined {
-  const drivenMps = hill.index === undefined ? undefined : answer?.judged.segments[hill.index]?.speedMps
-  const fromMps = Math.min(drivenMps ?? hill.speedMps, hill.speedMps)
-  return hill.index !== undefined && fromMps >= SLOWER_FROM_MPS ? fromMps - SLOWER_BY_MPS : undefined
+/** 5 mph less than a speed, unless it is a crawl. */
+export function slowerThan(situation: Situation, fromMps: number): Remedy[] {
+  if (fromMps < SLOWER_FROM_MPS) return []
+  const speedMps = fromMps - SLOWER_BY_MPS
+  const label = words`Slow down by ${speed(SLOWER_BY_MPS)} ${where(situation)}, to ${speed(speedMps)}`
+  return [setupRemedy('slow-down', label, { speedMps })]
 }
 
 /** The shift style that protects the fluid, where the other is set. */

@@ -1,3 +1,6 @@
+import { CONSTRUCTION_WORDS } from '../build-sheet/generic-cooler'
+import { GENERIC_COOLERS } from '../heat/reference-point'
+import { AIR_CONSTRUCTIONS } from '../schemas/heat-input'
 import { STANDARD_GRAVITY, roadForce } from '../heat/road-load'
 import { kinematicViscosity, makeOil } from '../heat/fluids'
 import { oilCapacityRate } from '../heat/coolers'
@@ -174,6 +177,11 @@ function settled({ stretch }: Reading, read: (state: NonNullable<typeof stretch.
     ? []
     : [part('Where it would settle on this stretch', read(stretch.equilibrium), 'temperature')]
 }
+
+/** "2900 W/(m² K) stacked plate, …". */
+const GENERIC_UA = AIR_CONSTRUCTIONS.map(
+  (one) => `${GENERIC_COOLERS[one].uaPerAreaWM2K} W/(m² K) ${CONSTRUCTION_WORDS[one]}`,
+).join(', ')
 
 export const TOPICS = {
   'peak-pan': {
@@ -606,7 +614,7 @@ export const TOPICS = {
       'the smallest face of a generic core, last in the loop, with which pan and to-cooler line peak under “ease off”',
       'UA = UA per face · face',
     ],
-    where: 'UA per face: 2900, 2500 and 1500 W/(m² K) for stacked plate, plate and fin, tube and fin.',
+    where: `UA per face: ${GENERIC_UA} at the reference point.`,
     source:
       'The model run with core after core. Generic cores: judgement, between published ratings of each construction; spread 25 %.',
     inputs: FIRST_OF_ALL,

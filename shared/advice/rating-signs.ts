@@ -17,7 +17,7 @@ import { countAsGeneric, countRadiatorAt, fillRating, isInAir, takeOut } from '.
 import { draft, type Sign } from './sign'
 import type { Situation } from './situation'
 import type { Advice } from './types'
-import { figure, heat, rise, words } from './words'
+import { figure, heat, joinWords, rise, words } from './words'
 
 /** What is wrong with a rating before anything is computed with it. */
 
@@ -166,9 +166,6 @@ function usualConditions({ construction, missing }: SheetCooler): Record<string,
     inAir === undefined ? tank : { ...REFERENCE_POINT, pressureDropPa: GENERIC_COOLERS[inAir].pressureDropPa }
   return Object.fromEntries(missing.map((one) => [one, usual[one] ?? tank[one as keyof typeof tank] ?? 0]))
 }
-
-const joinWords = (parts: readonly string[]): string =>
-  parts.length < 2 ? (parts[0] ?? '') : `${parts.slice(0, -1).join(', ')} and ${parts.at(-1) ?? ''}`
 
 /** A rating no exchanger could have: the model gives no answer at all. */
 export const impossibleRatings: Sign = (situation) => {

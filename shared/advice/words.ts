@@ -42,3 +42,7 @@ export function say(sentence: Words, format: Format): string {
 const ORDINALS = ['', '1st', '2nd', '3rd']
 /** A gear as it is called: "3rd". */
 export const ordinal = (count: number): string => ORDINALS[count] ?? `${count}th`
+
+/** "a", "a and b", "a, b and c". */
+export const joinWords = (parts: readonly string[]): string =>
+  parts.length < 2 ? (parts[0] ?? '') : `${parts.slice(0, -1).join(', ')} and ${parts.at(-1) ?? ''}`
