@@ -1,6 +1,6 @@
 import type { HeatInput, Segment } from '../schemas/heat-input'
 import { AppError } from '../errors'
-import { CONVERTER, COOLANT, SUMP, loneBodyAt } from './balances'
+import { CONVERTER, SUMP, loneBodyAt } from './balances'
 import type { ThermalPoint } from './balances'
 import { equilibriumOf } from './equilibrium'
 import { referenceDamageRate, wallChartDistance } from './fluid-life'
@@ -13,7 +13,7 @@ import { addTally, freshTally } from './tally'
 import type { Tally } from './tally'
 import { makeThermal, makeTruck, operatingPoints, segmentDuration, startTemperatures } from './truck'
 import type { Truck } from './truck'
-import type { Estimate, EstimateOptions, SegmentResult, State } from './types'
+import type { Estimate, EstimateOptions, SegmentResult, Series, State } from './types'
 import { MODEL_VERSION } from './version'
 import { collectWarnings } from './warnings'
 
@@ -24,16 +24,8 @@ const DEFAULT_STEP_S = 10
 export const LONGEST_DUTY_S = 1e6
 export const LONGEST_SERIES = 200_000
 
-function checkLength(
-  truck: Truck,
-  segments: readonly Segment[],
-  points: OperatingPoint[],
-  stepS: number,
-): void {
-  let totalS = 0
-  segments.forEach((segment, index) => {
-    totalS += segmentDuration(segment, points[index]!)
-  })
+function checkLength(durations: readonly number[], stepS: number): void {
+  const totalS = durations.reduce((sum, durationS) => sum + durationS, 0)
   if (totalS > LONGEST_DUTY_S || totalS / stepS > LONGEST_SERIES)
     throw new AppError('bad_input', {
       issues: [
@@ -97,6 +89,86 @@ export function peaksOfDuty(
   return peaks
 }
 
+/** A drive cycle driven: what happened on each segment, along the way and in sum. */
+interface Drive {
+  results: SegmentResult[]
+  series: Series
+  total: Tally
+  totalS: number
+  distanceM: number
+}
+
+/** Where the drive stands between two segments. */
+interface DriveState {
+  temperatures: Float64Array
+  axleC: number
+  transferCaseC: number
+  timeS: number
+}
+
+/** Drives one segment from a state, which becomes its end; its points go to the writer, its sums to the total. */
+function driveOn(
+  truck: Truck,
+  thermal: ThermalPoint,
+  point: OperatingPoint,
+  durationS: number,
+  at: DriveState,
+  output: { writer: SeriesWriter; stepS: number; total: Tally },
+): SegmentResult {
+  thermal.set(point)
+  const { temperatures } = at
+  const run: SegmentRun = {
+    thermal,
+    durationS,
+    tally: freshTally(),
+    axleStartC: at.axleC,
+    transferCaseStartC: at.transferCaseC,
+    startS: at.timeS,
+    stepS: output.stepS,
+    writer: output.writer,
+  }
+  if (at.timeS === 0) writeState(output.writer, at, thermal.stateAt(temperatures, at.axleC, at.transferCaseC))
+  driveSegment(run, temperatures, truck.resolved.fluidLife)
+  at.axleC = loneBodyAt(thermal.axle, at.axleC, durationS)
+  at.transferCaseC = loneBodyAt(thermal.transferCase, at.transferCaseC, durationS)
+  at.timeS += durationS
+  const end = thermal.stateAt(temperatures, at.axleC, at.transferCaseC)
+  writeState(output.writer, at, end)
+  addTally(output.total, run.tally)
+  const rest = point.kind === 'stall' ? null : equilibriumState(thermal, temperatures)
+  return segmentResult(point, thermal, durationS, run.tally, end, rest)
+}
+
+function writeState(writer: SeriesWriter, at: DriveState, state: State): void {
+  const { sumpC, coolerInletC, coolerReturnC, coolantC } = state
+  writer.push(at.timeS, sumpC, coolerInletC, coolerReturnC, coolantC, at.axleC, at.transferCaseC)
+}
+
+function driveDuty(
+  truck: Truck,
+  points: readonly OperatingPoint[],
+  durations: readonly number[],
+  stepS: number,
+): Drive {
+  const { start } = truck.resolved
+  const at = {
+    temperatures: startTemperatures(start),
+    axleC: start.axleC,
+    transferCaseC: start.axleC,
+    timeS: 0,
+  }
+  const writer = new SeriesWriter(
+    durations.reduce((count, durationS) => count + pointsOnSegment(durationS, stepS), 1),
+  )
+  const thermal = makeThermal(truck)
+  const total = freshTally()
+  const results = points.map((point, index) =>
+    driveOn(truck, thermal, point, durations[index]!, at, { writer, stepS, total }),
+  )
+  const distanceM = results.reduce((sum, result) => sum + result.distanceM, 0)
+  return { results, series: writer.series, total, totalS: at.timeS, distanceM }
+}
+
 /**
  * How hot the fluid gets on a drive cycle.
  * @param input - truck, load, duty; accepted by `HeatInputSchema`
@@ -108,59 +180,17 @@ export function peaksOfDuty(
 export function estimate(input: HeatInput, options: EstimateOptions = {}): Estimate {
   const stepS = options.stepS ?? DEFAULT_STEP_S
   const truck = makeTruck(input)
-  const { resolved } = truck
+  const { fluidLife, masses } = truck.resolved
   const { segments } = input.duty
   const points = operatingPoints(truck, segments)
-  checkLength(truck, segments, points, stepS)
-  const temperatures = startTemperatures(resolved.start)
-  let axleC = resolved.start.axleC
-  let transferCaseC = resolved.start.axleC
-  let timeS = 0
-  let distanceM = 0
   const durations = segments.map((segment, index) => segmentDuration(segment, points[index]!))
-  const writer = new SeriesWriter(
-    durations.reduce((count, durationS) => count + pointsOnSegment(durationS, stepS), 1),
-  )
-  const thermal = makeThermal(truck)
-  const total = freshTally()
-  const results = points.map((point, index) => {
-    thermal.set(point)
-    const durationS = durations[index]!
-    const run: SegmentRun = {
-      thermal,
-      durationS,
-      tally: freshTally(),
-      axleStartC: axleC,
-      transferCaseStartC: transferCaseC,
-      startS: timeS,
-      stepS,
-      writer,
-    }
-    if (index === 0) {
-      const [sumpC, inletC, coolantC] = [
-        temperatures[SUMP]!,
-        temperatures[CONVERTER]!,
-        temperatures[COOLANT]!,
-      ]
-      thermal.circuit.evaluate(sumpC, inletC, coolantC)
-      writer.push(0, sumpC, inletC, thermal.circuit.returnC, coolantC, axleC, transferCaseC)
-    }
-    driveSegment(run, temperatures, resolved.fluidLife)
-    axleC = loneBodyAt(thermal.axle, axleC, durationS)
-    transferCaseC = loneBodyAt(thermal.transferCase, transferCaseC, durationS)
-    const end = thermal.stateAt(temperatures, axleC, transferCaseC)
-    timeS += durationS
-    distanceM += point.speedMps * durationS
-    writer.push(timeS, end.sumpC, end.coolerInletC, end.coolerReturnC, end.coolantC, axleC, transferCaseC)
-    addTally(total, run.tally)
-    const rest = point.kind === 'stall' ? null : equilibriumState(thermal, temperatures)
-    return segmentResult(point, thermal, durationS, run.tally, end, rest)
-  })
+  checkLength(durations, stepS)
+  const drive = driveDuty(truck, points, durations, stepS)
   const answer = {
     modelVersion: MODEL_VERSION,
-    segments: results,
-    series: writer.series,
-    ...lifeResults(total, resolved.fluidLife, resolved.masses.converterOilShare, timeS, distanceM),
+    segments: drive.results,
+    series: drive.series,
+    ...lifeResults(drive.total, fluidLife, masses.converterOilShare, drive.totalS, drive.distanceM),
   }
   return { ...answer, warnings: collectWarnings(input, truck, answer) }
 }
