@@ -1,4 +1,4 @@
-import type { Point, Rect } from './geometry'
+import { clamp, type Point, type Rect } from './geometry'
 import {
   EDGE,
   laneDepth,
@@ -14,16 +14,23 @@ import { HEADER, layBypass, layPipes, type Place } from './pipes'
 /** The oil from top to bottom, the air from the left, the words at the right: for a phone, or for many groups. */
 
 const WIDEST = 600
-const CORE_DEPTH = 20
 const CORE_LENGTH = TEXT_HEIGHT + 3
-const CORE_PITCH = CORE_DEPTH + 6
+/** From core to core of one lane: as wide as there is room, so that words keep a place beside them [px]. */
+const WIDEST_PITCH = 26
+const NARROWEST_PITCH = 19
+const CORE_GAP = 6
+const LEAST_TEXT = 44
+const LEAST_CAPTION = 90
 const EMPTY_LANE = 12
 const PLATE_DEPTH = 17
+const LANES_LEFT = EDGE + 18
+const UNDERBODY_GAP = 16
+const TEXT_GAP = 14
 /** Length of the stack that has no cooler in it: room for the names along its plates [px]. */
 const EMPTY_STACK = 84
 const ROW = TEXT_HEIGHT + 8
-/** Words of the bypass need up to four lines [px]. */
-const BYPASS_ROOM = 68
+/** Words of the bypass need up to four lines, and those of the hot line two [px]. */
+const BYPASS_ROOM = 94
 /** Where the lines enter and leave the case, from its left end at this size [px]. */
 const RETURN_PORT = 37
 const HOT_PORT = 113
@@ -36,10 +43,25 @@ interface AirPath {
   underbodyX: number | undefined
 }
 
+const ALWAYS: readonly Position[] = ['ahead-of-condenser', 'behind-condenser']
+const WHERE_USED: readonly Position[] = ['radiator-tank', 'remote']
+
+/** How far apart the cores of a lane stand in a drawing of a width. */
+function findPitch(depth: (position: Position) => number, width: number): number {
+  const cores = [...ALWAYS, ...WHERE_USED].reduce((sum, position) => sum + depth(position), 0)
+  const lanes = [
+    ...ALWAYS.map((position) => (depth(position) === 0 ? EMPTY_LANE : CORE_GAP)),
+    ...WHERE_USED.map((position) => (depth(position) === 0 ? 0 : CORE_GAP)),
+  ].reduce((sum, lane) => sum + lane, 0)
+  const gap = depth('remote') > 0 ? UNDERBODY_GAP : 0
+  const room = width - LANES_LEFT - lanes - 2 * PLATE_DEPTH - gap - TEXT_GAP - LEAST_TEXT - 2
+  return cores === 0 ? WIDEST_PITCH : clamp(Math.floor(room / cores), NARROWEST_PITCH, WIDEST_PITCH)
+}
+
 /** The stack from the front backwards, then what hangs under the body; heights are set when the rows are known. */
-function layAirPath(depth: (position: Position) => number, top: number): AirPath {
+function layAirPath(depth: (position: Position) => number, pitch: number, top: number): AirPath {
   const path: AirPath = { lanes: [], plates: [], right: 0, underbodyX: undefined }
-  let x = EDGE + 18
+  let x = LANES_LEFT
   const take = (width: number): Rect => {
     const rect = { x, y: top, width, height: 0 }
     x += width
@@ -48,7 +70,7 @@ function layAirPath(depth: (position: Position) => number, top: number): AirPath
   const middle = (rect: Rect): Point => ({ x: rect.x + rect.width / 2, y: top })
   const lane = (position: Position) => {
     const deep = depth(position)
-    const rect = take(deep === 0 ? EMPTY_LANE : deep * CORE_PITCH + 6)
+    const rect = take(deep === 0 ? EMPTY_LANE : deep * pitch + CORE_GAP)
     path.lanes.push({ position, rect, label: middle(rect), empty: deep === 0 })
   }
   const plate = (kind: Plate['kind']) => {
@@ -62,7 +84,7 @@ function layAirPath(depth: (position: Position) => number, top: number): AirPath
   if (depth('radiator-tank') > 0) lane('radiator-tank')
   if (depth('remote') > 0) {
     path.underbodyX = x + 7
-    x += 16
+    x += UNDERBODY_GAP
     lane('remote')
   }
   path.right = x
@@ -72,17 +94,19 @@ function layAirPath(depth: (position: Position) => number, top: number): AirPath
 /** The layout of a loop in a narrow place. */
 export function layoutDown(request: LoopLayoutRequest, groups: readonly (readonly number[])[]): LoopLayout {
   const width = Math.min(request.width, WIDEST)
-  const transmission = { x: EDGE + 18, y: 4, width: 161, height: 58 }
+  const transmission = { x: LANES_LEFT, y: 4, width: 161, height: 58 }
   const [returnX, hotX] = [transmission.x + RETURN_PORT, transmission.x + HOT_PORT]
   const caseY = transmission.y + 40
   const returnRunY = transmission.y + transmission.height + 14
   const bypassY = returnRunY + 30
-  const runY = request.bypass ? bypassY + BYPASS_ROOM : returnRunY + 34
-  const top = runY + 48
+  const runY = request.bypass ? bypassY + BYPASS_ROOM : returnRunY + 36
+  const top = runY + 40
 
-  const air = layAirPath((position) => laneDepth(request, groups, position), top)
-  const textX = Math.max(air.right + 14, hotX + 18)
-  const textWidth = Math.max(60, width - textX - 2)
+  const depth = (position: Position) => laneDepth(request, groups, position)
+  const pitch = findPitch(depth, width)
+  const air = layAirPath(depth, pitch, top)
+  const textX = Math.max(air.right + TEXT_GAP, hotX + 18)
+  const textWidth = width - textX - 2
 
   let y = top + 4
   const bands = groups.map((members) => {
@@ -100,12 +124,12 @@ export function layoutDown(request: LoopLayoutRequest, groups: readonly (readonl
   const place: PlaceStation = ({ index, group, members, lane }) => {
     const { start, end } = bands[group] ?? { start: 0, end: 0 }
     const middle = (start + end) / 2
-    const x = lane.rect.x + 6 + placeInLane(request, members, index) * CORE_PITCH
+    const x = lane.rect.x + CORE_GAP + placeInLane(request, members, index) * pitch
     const textY = middle + (members.indexOf(index) - members.length / 2) * ROW + 4
     return {
       index,
       group,
-      core: { x, y: middle - CORE_LENGTH / 2, width: CORE_DEPTH, height: CORE_LENGTH },
+      core: { x, y: middle - CORE_LENGTH / 2, width: pitch - CORE_GAP, height: CORE_LENGTH },
       text: { x: textX, y: textY, width: textWidth, height: TEXT_HEIGHT },
       target: { x: textX - 6, y: textY - 4, width: textWidth + 8, height: ROW },
     }
@@ -153,31 +177,35 @@ export function layoutDown(request: LoopLayoutRequest, groups: readonly (readonl
         )
       : []
   })
-  const captionAt = (captionY: number) => ({
-    x: textX,
+  const captionAt = (x: number, captionY: number) => ({
+    x,
     y: captionY,
     anchor: 'start' as const,
-    width: textWidth,
+    width: width - x - 2,
   })
+  const besideHot = hotX + 18
+  const firstX = stations[0] ? stations[0].core.x + stations[0].core.width : 0
+  // Words of the return line stand beside the others, or below the line where there is no room for them.
+  const below = textWidth < LEAST_CAPTION
   return {
     runs: 'down',
     width,
-    height: endY + 20,
+    height: endY + (below ? 46 : 20),
     stations,
     lanes: air.lanes,
     plates: air.plates,
     pipes,
     airArrows,
-    outside: captionAt(top - 8),
+    outside: captionAt(Math.min(textX, Math.max(besideHot, firstX + 8)), top - 8),
     underbody:
       air.underbodyX === undefined
         ? null
         : { from: { x: air.underbodyX, y: top }, to: { x: air.underbodyX, y: bottom } },
     transmission,
-    hotCaption: captionAt(runY - 10),
-    returnCaption: captionAt(endY - 6),
+    hotCaption: captionAt(besideHot, runY - 34),
+    returnCaption: below ? captionAt(LANES_LEFT, endY + 20) : captionAt(textX, endY - 6),
     bypass: request.bypass
-      ? { valve: { x: (hotX + EDGE) / 2, y: bypassY }, caption: captionAt(bypassY - 14) }
+      ? { valve: { x: (hotX + EDGE) / 2, y: bypassY }, caption: captionAt(besideHot, bypassY - 14) }
       : null,
     bands,
   }

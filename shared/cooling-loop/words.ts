@@ -1,7 +1,7 @@
 import { CONSTRUCTION_WORDS, POSITION_WORDS } from '../build-sheet/generic-cooler'
 import { formatGiven } from '../charts/formats'
 import type { Cooler } from '../schemas/heat-input'
-import { formatQuantity, type UnitSystem } from '../units/display'
+import { formatQuantity, quantityParts, type UnitSystem } from '../units/display'
 import { groupLoop, type LoopEdit } from './edit'
 import type { Position } from './layout-types'
 import type { LoopReading } from './reading'
@@ -61,6 +61,8 @@ export function stationLines(
   const heat: Wording = [
     heatWords(cooler, heatW, system),
     formatQuantity(heatW ?? cooler.rating.heatW, 'heatRate', system),
+    // A figure is never cut: half of it would be another figure.
+    quantityParts(heatW ?? cooler.rating.heatW, 'heatRate', system).figure,
   ]
   return [[cooler.name], heat, outWords(cooler, members, index, reading?.afterGroupC[group], system)]
 }

@@ -115,7 +115,7 @@ describe('without a cooler', () => {
 describe('for any loop and any width', () => {
   const request = fc.record({
     coolers: anyLoop,
-    width: fc.integer({ min: 320, max: 1600 }),
+    width: fc.integer({ min: 280, max: 1600 }),
     bypass: fc.boolean(),
   })
   const forAny = (
