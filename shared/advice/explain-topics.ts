@@ -32,6 +32,8 @@ export interface Topic {
    * the cooler asked about.
    */
   inputs: readonly string[]
+  /** What it is read from; numbers of one kind are worked out together. An estimate unless said. */
+  from?: 'grade' | 'sizing'
   read: (reading: Reading) => number | null
   parts?: (reading: Reading) => ExplainPart[]
 }
@@ -604,6 +606,7 @@ export const TOPICS = {
     where: 'Grades are tried in steps of half a percent, the last step halved until it no longer matters.',
     source: 'The model run grade by grade; what it rests on is said with pan and to-cooler line.',
     inputs: FIRST_OF_ALL,
+    from: 'grade',
     read: (reading) => reading.gradeHeld,
   },
   'needed-area': {
@@ -618,6 +621,7 @@ export const TOPICS = {
     source:
       'The model run with core after core. Generic cores: judgement, between published ratings of each construction; spread 25 %.',
     inputs: FIRST_OF_ALL,
+    from: 'sizing',
     read: ({ needed }) => needed.faceAreaM2,
     parts: ({ needed }) => [part('Heat at the reference point', needed.heatW, 'heatRate')],
   },
@@ -633,6 +637,7 @@ export const TOPICS = {
       'ε from UA of the needed core. Catalogue parts are restated at the same point, so that they compare.',
     source: EXCHANGER,
     inputs: FIRST_OF_ALL,
+    from: 'sizing',
     read: ({ needed }) => needed.heatW,
     parts: ({ needed }) => [part('Conductance UA', needed.uaWK, 'conductance')],
   },
@@ -644,6 +649,7 @@ export const TOPICS = {
     where: 'UA: heat per degree between the streams of the exchanger.',
     source: EXCHANGER,
     inputs: FIRST_OF_ALL,
+    from: 'sizing',
     read: ({ needed }) => needed.uaWK,
     parts: ({ needed }) => [part('Face', needed.faceAreaM2, 'area')],
   },

@@ -1,4 +1,4 @@
-import { simpleBand } from '../build-sheet/band'
+import { type Band, simpleBand } from '../build-sheet/band'
 import { flattenBranch } from '../build-sheet/sheet'
 import {
   findSpreadOfPath,
@@ -16,7 +16,7 @@ import type { BuildSheet, Origin } from '../schemas/sheet'
 import type { Quantity } from '../units/display'
 import type { Answer } from '../workbench/answer'
 import { type ExplainChoice, Reading } from './explain-reading'
-import { type ExplainId, type ExplainPart, type Topic, TOPICS } from './explain-topics'
+import { EXPLAIN_IDS, type ExplainId, type ExplainPart, type Topic, TOPICS } from './explain-topics'
 import { findLabel, labelOf, valueWords } from './labels'
 import type { AdviceRequest } from './types'
 
@@ -115,7 +115,8 @@ export function explainAtOnce(id: ExplainId, context: ExplainContext): Omit<Expl
  * @param id - which kind of number
  * @param context - the request, its answer, and which of several is meant: `segment` (the hottest unless said), `cooler`
  *   (all together unless said), `core` (stacked plate ahead of the condenser unless said)
- * @returns what the number rests on; `movesItMost` takes eleven runs of the model, or of what the number takes
+ * @returns what the number rests on; `movesItMost` takes eleven runs of the model for the first number
+ *   of an answer, none for the next of its kind
  */
 export function explain(id: ExplainId, context: ExplainContext): Explanation {
   const atOnce = explainAtOnce(id, context)
@@ -132,19 +133,35 @@ function readResult(topic: Topic, reading: Reading): { value: number | null; pro
   }
 }
 
+/** Bands by answer, then by choice and kind of number: whoever opens one number usually opens the next. */
+const knownBands = new WeakMap<Answer, Map<string, Record<string, Band>>>()
+
+/** Every number of one kind with each doubt moved alone: eleven runs of the model, once. */
+function bandsOf(from: Topic['from'], context: ExplainContext, choice: ExplainChoice): Record<string, Band> {
+  const known = knownBands.get(context.answers) ?? new Map<string, Record<string, Band>>()
+  knownBands.set(context.answers, known)
+  const key = JSON.stringify([from ?? '', choice])
+  const found = known.get(key)
+  if (found !== undefined) return found
+  const ids = EXPLAIN_IDS.filter((id) => topicOf(id).from === from)
+  const bands = simpleBand({
+    input: context.answers.input,
+    spreads: listSpreads(context.sheet),
+    measure: (input: HeatInput): Record<string, number> => {
+      const reading = new Reading(input, choice, context.limits)
+      return Object.fromEntries(ids.map((id) => [id, topicOf(id).read(reading) ?? 0]))
+    },
+  })
+  known.set(key, bands)
+  return bands
+}
+
 /** The doubts that move a number most, the largest first. */
 export function findMoves(id: ExplainId, context: ExplainContext): Move[] {
   const topic = topicOf(id)
-  const choice = choiceOf(context)
   const spreads = listSpreads(context.sheet)
-  const { value } = simpleBand({
-    input: context.answers.input,
-    spreads,
-    measure: (input: HeatInput) => ({
-      value: topic.read(new Reading(input, choice, context.limits)) ?? 0,
-    }),
-  })
-  return value.parts
+  const parts = bandsOf(topic.from, context, choiceOf(context))[id]?.parts ?? []
+  return parts
     .filter(({ effect }) => Number.isFinite(effect) && effect !== 0)
     .slice(0, MOST_MOVES)
     .map(({ name, effect }) => moveOf(name, effect, spreads, topic, context.sheet))
@@ -207,6 +224,7 @@ function explained({ path, value, origin, spread }: Leaf, sheet: BuildSheet): Ex
 /** Everything the judged answer was computed from, leaf by leaf, with the model's defaults where nothing is given. */
 function listLeaves(context: ExplainContext): Leaf[] {
   const { input } = context.answers
+  const spreads = listSpreads(context.sheet)
   const build = flattenBranch(input.build, 'typical').map(({ path, value }): Leaf => {
     const onSheet = context.sheet.values.find((one) => one.path === path)
     if (onSheet === undefined || onSheet.value !== value)
@@ -214,16 +232,24 @@ function listLeaves(context: ExplainContext): Leaf[] {
     return { path, value, origin: onSheet.origin, spread: relativeSpreadOf(onSheet) ?? null }
   })
   const driven = flattenBranch({ load: input.load, duty: input.duty }, 'typical').map(
-    ({ path, value }): Leaf => ({ path, value, origin: 'scenario', spread: spreadOfDrive(path) }),
+    ({ path, value }): Leaf => ({ path, value, origin: 'scenario', spread: spreadOfDrive(path, spreads) }),
   )
   const given = [...build, ...driven]
   const paths = new Set(given.map(({ path }) => path))
   return [...given, ...listDefaults(input).filter(({ path }) => !paths.has(path))]
 }
 
-/** Of what the drive asks, only rolling resistance is a doubt, whoever typed it. */
-const spreadOfDrive = (path: string): number | null =>
-  path.endsWith('.rollingResistance') ? SPREADS.rollingResistance.relative : null
+/** Doubts about what the drive asks: a trailer is as well known as the truck that pulls it, the road’s drag never is. */
+const DOUBTS_OF_DRIVE: Readonly<Record<string, SpreadName>> = {
+  'load.cargoMassKg': 'mass',
+  'load.trailerMassKg': 'mass',
+  'load.trailerDragAreaM2': 'dragArea',
+}
+
+function spreadOfDrive(path: string, spreads: RelativeSpreads): number | null {
+  const doubt = path.endsWith('.rollingResistance') ? 'rollingResistance' : DOUBTS_OF_DRIVE[path]
+  return doubt === undefined ? null : spreads[doubt]
+}
 
 /** What the model takes where the sheet says nothing: typical values, with the spread of their doubt. */
 function listDefaults(input: HeatInput): Leaf[] {
@@ -232,7 +258,7 @@ function listDefaults(input: HeatInput): Leaf[] {
   const rolling = duty.segments.map((segment, index) => ({
     path: `duty.segments.${index}.rollingResistance`,
     value: resolveRollingResistance(segment),
-    spread: spreadOfDrive(`duty.segments.${index}.rollingResistance`),
+    spread: SPREADS.rollingResistance.relative,
   }))
   return [...values, ...rolling].map((one) => ({
     path: one.path,

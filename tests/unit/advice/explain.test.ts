@@ -5,6 +5,7 @@ import {
   type ExplainId,
   EXPLAIN_IDS,
   explainAtOnce,
+  findMoves,
 } from '../../../shared/advice'
 import { targetsOfLimits } from '../../../shared/build-sheet/limits'
 import { listSpreads, spreadFactor, SPREADS } from '../../../shared/build-sheet/spreads'
@@ -206,6 +207,8 @@ describe('where an input comes from', () => {
     expect(inputOf(context, 'road-force', 'load.trailerMassKg')).toMatchObject({
       si: 1800,
       origin: 'scenario',
+      // As much a guess as the truck's.
+      spread: 0.08,
     })
     expect(inputOf(context, 'road-force', 'duty.segments.1.grade')).toMatchObject({
       si: 0.06,
@@ -290,6 +293,12 @@ describe('what moves a number most', () => {
     expect(result.si).not.toBeNull()
     expect(movesItMost.length).toBeGreaterThan(0)
     for (const { effect } of movesItMost) expect(Number.isFinite(effect)).toBe(true)
+  })
+
+  it('can be asked for after the rest', () => {
+    const { movesItMost, ...rest } = explain('coolant', context)
+    expect(explainAtOnce('coolant', context)).toEqual(rest)
+    expect(findMoves('coolant', context)).toEqual(movesItMost)
   })
 
   it('is nothing for the road force of a standing truck', () => {
