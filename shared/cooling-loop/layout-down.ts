@@ -52,7 +52,7 @@ function findPitch(depth: (position: Position) => number, width: number): number
   const lanes = [
     ...ALWAYS.map((position) => (depth(position) === 0 ? EMPTY_LANE : CORE_GAP)),
     ...WHERE_USED.map((position) => (depth(position) === 0 ? 0 : CORE_GAP)),
-  ].reduce((sum, lane) => sum + lane, 0)
+  ].reduce<number>((sum, lane) => sum + lane, 0)
   const gap = depth('remote') > 0 ? UNDERBODY_GAP : 0
   const room = width - LANES_LEFT - lanes - 2 * PLATE_DEPTH - gap - TEXT_GAP - LEAST_TEXT - 2
   return cores === 0 ? WIDEST_PITCH : clamp(Math.floor(room / cores), NARROWEST_PITCH, WIDEST_PITCH)
