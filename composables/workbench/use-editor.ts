@@ -1,5 +1,5 @@
 import type { InjectionKey } from 'vue'
-import { findSheetValue, removeSheetBranch, setSheetValue } from '#shared/build-sheet/sheet'
+import { removeSheetBranch, setSheetValue } from '#shared/build-sheet/sheet'
 import type { BuildSheet, Origin, SheetValue } from '#shared/schemas/sheet'
 import type { Control } from '#shared/schemas/control'
 import type { Duty, Load } from '#shared/schemas/heat-input'
@@ -16,10 +16,14 @@ export interface EditedValues {
 
 export interface Editor {
   values: Readonly<Ref<EditedValues>>
+  /** The leaves of the build sheet by their path; a change of load or drive cycle leaves them alone. */
+  leaves: Readonly<Ref<ReadonlyMap<string, SheetValue>>>
   readOnly: boolean
   set: (changes: Partial<EditedValues>) => void
   /** What is wrong at a path of the build or the drive cycle, in words. */
   issueAt: (path: string) => string | undefined
+  /** Whether anything under one of these paths is wrong: a closed section says so. */
+  hasIssueIn: (...prefixes: string[]) => boolean
 }
 
 const KEY: InjectionKey<Editor> = Symbol('editor')
@@ -38,7 +42,7 @@ export function useEditor(): Editor {
 /** Reading and writing one leaf of the build sheet. */
 export function useSheetLeaf(path: () => string) {
   const editor = useEditor()
-  const leaf = computed(() => findSheetValue(editor.values.value.sheet, path()))
+  const leaf = computed(() => editor.leaves.value.get(path()))
 
   function write(change: Partial<SheetValue> & Pick<SheetValue, 'value'>) {
     const before = leaf.value

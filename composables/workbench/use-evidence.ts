@@ -49,7 +49,7 @@ function workHere(hear: (news: EvidenceNews) => void): Clerk {
 export function useEvidence(options: {
   initialGrades: GradeChartData | null
   initialDepth: Partial<Depth> | null
-  gradesOnly?: boolean
+  brief?: boolean
 }) {
   const grades = shallowRef(options.initialGrades)
   const depth = shallowRef<Partial<Depth> | null>(options.initialDepth)
@@ -68,8 +68,19 @@ export function useEvidence(options: {
   function hear(news: EvidenceNews) {
     if (news.grades && isNews('grades', news.order)) grades.value = news.grades
     const fresh = Object.entries(news.depth ?? {}).filter(([key]) => isNews(key, news.order))
-    if (fresh.length > 0) depth.value = { ...depth.value, ...Object.fromEntries(fresh) }
+    if (fresh.length > 0) gather(Object.fromEntries(fresh))
     if (news.done && news.order === lastOrder) upToDate.value = true
+  }
+
+  // Several stages often arrive within one frame: they are shown together.
+  let gathered: Partial<Depth> | undefined
+  function gather(fresh: Partial<Depth>) {
+    if (gathered === undefined) requestAnimationFrame(show)
+    gathered = { ...gathered, ...fresh }
+  }
+  function show() {
+    if (gathered) depth.value = { ...depth.value, ...gathered }
+    gathered = undefined
   }
 
   let waiting: EvidenceOrder | undefined
@@ -77,7 +88,7 @@ export function useEvidence(options: {
   function order(request: DepthRequest) {
     lastOrder += 1
     upToDate.value = false
-    waiting = { order: lastOrder, request, gradesOnly: options.gradesOnly ?? false }
+    waiting = { order: lastOrder, request, brief: options.brief ?? false }
     clerk ??= hireWorker(hear, replaceWorker) ?? workHere(hear)
     clerk.send(waiting)
   }

@@ -1,3 +1,5 @@
+const WRITE_AFTER_MS = 300
+
 /**
  * Keeps typing that is not saved yet on this device, so that neither a closed tab nor a dead server loses it, and puts it
  * back when the page is opened again. What is saved is no longer kept.
@@ -10,7 +12,14 @@ export function useKeptTyping<Kept>(options: {
   /** Changes of this are looked at. */
   when: () => unknown
 }) {
+  let timer: ReturnType<typeof setTimeout> | undefined
+  /** Not at every move of a slider: writing to the disk would hold the page up. */
+  const writeSoon = () => {
+    clearTimeout(timer)
+    timer = setTimeout(write, WRITE_AFTER_MS)
+  }
   const write = () => {
+    clearTimeout(timer)
     try {
       if (options.isOpen()) localStorage.setItem(options.key, JSON.stringify(options.read()))
       else localStorage.removeItem(options.key)
@@ -25,9 +34,14 @@ export function useKeptTyping<Kept>(options: {
     const kept = readKept<Kept>(options.key)
     if (kept !== undefined) options.restore(kept)
     window.addEventListener('beforeunload', warn)
-    watch(options.when, write)
+    window.addEventListener('pagehide', write)
+    watch(options.when, writeSoon)
   })
-  onBeforeUnmount(() => window.removeEventListener('beforeunload', warn))
+  onBeforeUnmount(() => {
+    write()
+    window.removeEventListener('beforeunload', warn)
+    window.removeEventListener('pagehide', write)
+  })
 }
 
 function readKept<Kept>(key: string): Kept | undefined {

@@ -24,7 +24,8 @@ export function useWorkbenchAnswer(
   request: Readonly<Ref<WorkbenchRequest>>,
   options: {
     initialDepth?: Partial<Depth> | null
-    gradesOnly?: boolean
+    /** Only the grade curve and the band of the answer. */
+    brief?: boolean
     /** What the deeper look needs besides: the catalogue, and where a part would be mounted. */
     extras?: () => Pick<DepthRequest, 'coolers' | 'mountAt'>
   } = {},
@@ -36,7 +37,7 @@ export function useWorkbenchAnswer(
   const evidence = useEvidence({
     initialGrades: answer.value ? firstGrades(request.value, answer.value) : null,
     initialDepth: options.initialDepth ?? null,
-    gradesOnly: options.gradesOnly,
+    brief: options.brief,
   })
 
   const ghost = shallowRef<Ghost | null>(null)

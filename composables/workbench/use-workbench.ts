@@ -99,8 +99,10 @@ export function useWorkbench(opened: {
     shown.deepen()
   })
 
+  const sheet = computed(() => buildPart.value.value.sheet)
   provideEditor({
     values,
+    leaves: computed(() => new Map(sheet.value.values.map((value) => [value.path, value]))),
     readOnly,
     set(changes) {
       const { load, duty, ...ofBuild } = changes
@@ -109,6 +111,9 @@ export function useWorkbench(opened: {
         scenarioPart.change({ ...(load ? { load } : {}), ...(duty ? { duty } : {}) })
     },
     issueAt: (path) => shown.refusal.value?.issues.find((issue) => issue.path === path)?.message,
+    hasIssueIn: (...prefixes) =>
+      shown.refusal.value?.issues.some(({ path }) => prefixes.some((prefix) => path.startsWith(prefix))) ??
+      false,
   })
 
   const parts = [buildPart, scenarioPart] as const

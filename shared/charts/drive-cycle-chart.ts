@@ -266,14 +266,15 @@ function drawCurves(
   }))
 }
 
+function allPoints(series: CycleSeries, channel: CycleChannel): CurvePoint[] {
+  return series.timeS
+    .map((timeS, index) => ({ x: timeS, y: series[channel][index] ?? Number.NaN }))
+    .filter((point) => Number.isFinite(point.y))
+}
+
 /** The points of one channel as they are drawn. */
-export function cyclePoints(series: CycleSeries, channel: CycleChannel): CurvePoint[] {
-  const points = series.timeS.map((timeS, index) => ({ x: timeS, y: series[channel][index] ?? Number.NaN }))
-  return thinCurve(
-    points.filter((point) => Number.isFinite(point.y)),
-    MOST_POINTS,
-    (point) => point.y,
-  )
+function cyclePoints(series: CycleSeries, channel: CycleChannel): CurvePoint[] {
+  return thinCurve(allPoints(series, channel), MOST_POINTS, (point) => point.y)
 }
 
 /** What the chart reads at one moment. */
@@ -288,7 +289,7 @@ export interface CycleReading {
 export function readCycleAt(data: DriveCycleData, timeS: number): CycleReading {
   let endS = 0
   const segment = data.segments.find((one) => (endS += one.durationS) >= timeS) ?? data.segments.at(-1)
-  const read = (channel: CycleChannel) => interpolateAt(cyclePoints(data.series, channel), timeS)
+  const read = (channel: CycleChannel) => interpolateAt(allPoints(data.series, channel), timeS)
   return {
     timeS,
     segment,

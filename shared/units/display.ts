@@ -339,6 +339,22 @@ const MINUS = '\u2212'
 const roundSignificant = (value: number, digits: number): number =>
   value === 0 ? 0 : Number(value.toPrecision(digits))
 
+/** Making a number format takes a hundred times as long as using it, and a moved slider prints hundreds of numbers. */
+const DECIMAL_FORMATS = new Map<number, Intl.NumberFormat>()
+
+function decimalFormat(decimals: number): Intl.NumberFormat {
+  const known = DECIMAL_FORMATS.get(decimals)
+  if (known !== undefined) return known
+  const made = new Intl.NumberFormat('en-US', {
+    minimumFractionDigits: decimals,
+    maximumFractionDigits: decimals,
+  })
+  DECIMAL_FORMATS.set(decimals, made)
+  return made
+}
+
+const FIELD_FORMAT = new Intl.NumberFormat('en-US', { maximumFractionDigits: 9 })
+
 /**
  * Zeros that carry meaning stay ("4.70"), thousands are separated, and a minus is a minus, not a hyphen. Numbers from
  * 1,000 up are rounded to three significant digits too: nobody knows the heat of a truck to the fourth.
@@ -348,7 +364,7 @@ function printThree(value: number): string {
   const rounded = Math.abs(value) < 1e-12 ? 0 : roundSignificant(value, 3)
   const magnitude = rounded === 0 ? 0 : Math.floor(Math.log10(Math.abs(rounded)))
   const decimals = rounded === 0 ? 0 : Math.max(0, 2 - magnitude)
-  return rounded.toLocaleString('en-US', { minimumFractionDigits: decimals, maximumFractionDigits: decimals })
+  return decimalFormat(decimals).format(rounded)
 }
 
 const withMinus = (text: string) => text.replace(/^-/, MINUS)
@@ -361,7 +377,7 @@ const withMinus = (text: string) => text.replace(/^-/, MINUS)
 export function printFigure(value: number, digits: 'whole' | 'three'): string {
   if (!Number.isFinite(value)) return NO_FIGURE
   // Adding 0 turns −0, and what rounds to it, into 0.
-  if (digits === 'whole') return withMinus((Math.round(value) + 0).toLocaleString('en-US'))
+  if (digits === 'whole') return withMinus(decimalFormat(0).format(Math.round(value) + 0))
   return withMinus(printThree(value))
 }
 
@@ -421,7 +437,7 @@ export function fieldText(value: number | null, quantity: Quantity, system: Unit
   if (value === null || !Number.isFinite(value)) return ''
   const shown = roundSignificant(toShown(value, quantity, system), 6)
   // 1e-9 absorbs what is left of 0 after a conversion there and back (0 °F is −17.78 °C).
-  return (Math.abs(shown) < 1e-9 ? 0 : shown).toLocaleString('en-US', { maximumFractionDigits: 9 })
+  return FIELD_FORMAT.format(Math.abs(shown) < 1e-9 ? 0 : shown)
 }
 
 /** What typed text means: a number in SI with the unit it was typed in, nothing at all, or why it is neither. */

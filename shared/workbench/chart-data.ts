@@ -1,10 +1,9 @@
 import type { DriveCycleData } from '../charts/drive-cycle-chart'
-import type { GradeChartData } from '../charts/grade-chart'
+import type { GradeBandPoint, GradeChartData, GradeSeries } from '../charts/grade-chart'
 import type { HeatBudgetData } from '../charts/heat-budget'
 import type { Estimate } from '../heat/types'
 import type { Cooler, Duty } from '../schemas/heat-input'
 import type { Limits } from '../schemas/limits'
-import type { Depth } from './depth'
 import { segmentName } from './duty-edit'
 import { chartLimits } from './grade-evidence'
 
@@ -53,9 +52,11 @@ export function heatBudgetData(
 }
 
 /** The grade chart with what the deeper look adds: the band and the other set-ups. */
-export function gradeChartData(grades: GradeChartData, depth: Partial<Depth> | null): GradeChartData {
-  const others = depth?.otherCurves ?? []
-  const band = depth?.gradeBand
+export function gradeChartData(
+  grades: GradeChartData,
+  others: readonly GradeSeries[] = [],
+  band?: GradeBandPoint[],
+): GradeChartData {
   return {
     ...grades,
     series: [

@@ -110,9 +110,12 @@ export interface Depth {
 /** One part of the deeper look; the caller may breathe, or give up, between two of them. */
 export type DepthStage = (request: DepthRequest, answer: Answer, grades: GradeChartData) => Partial<Depth>
 
+/** What a first look asks for: no number without its band. */
+export const BRIEF_STAGES: readonly DepthStage[] = [(request) => ({ bands: computePeakBands(request) })]
+
 /** Quick enough to come with the page from the server. */
 const QUICK_STAGES: readonly DepthStage[] = [
-  (request) => ({ bands: computePeakBands(request) }),
+  ...BRIEF_STAGES,
   (request, _answer, grades) => ({ otherCurves: computeOtherCurves(request, grades) }),
   (request) => ({ setups: computeSetups(request), alternatives: computeAlternatives(request) }),
   (request) => ({ fluid: computeFluid(request) }),

@@ -1,7 +1,7 @@
 import type { GradeChartData } from '../charts/grade-chart'
 import { AppError } from '../errors'
 import { computeAnswer } from './answer'
-import { DEPTH_STAGES, type Depth } from './depth'
+import { BRIEF_STAGES, DEPTH_STAGES, type Depth } from './depth'
 import { computeGradeEvidence } from './grade-evidence'
 import type { DepthRequest } from './request'
 
@@ -9,8 +9,8 @@ import type { DepthRequest } from './request'
 export interface EvidenceOrder {
   order: number
   request: DepthRequest
-  /** Whether only the grade curve is asked for. */
-  gradesOnly: boolean
+  /** Whether only the grade curve and the band of the answer are asked for. */
+  brief: boolean
 }
 
 /** What came of an order so far: some of the evidence, or that the model refuses. */
@@ -36,7 +36,7 @@ export interface EvidenceHost {
  * order is always carried through, so that what is shown in the end belongs to the last value.
  */
 export async function runEvidence(
-  { order, request, gradesOnly }: EvidenceOrder,
+  { order, request, brief }: EvidenceOrder,
   host: EvidenceHost,
 ): Promise<void> {
   try {
@@ -44,7 +44,7 @@ export async function runEvidence(
     if (answer.kind === 'refusal') return host.emit({ order, done: true })
     const grades = computeGradeEvidence(request, answer)
     host.emit({ order, grades })
-    for (const stage of gradesOnly ? [] : DEPTH_STAGES) {
+    for (const stage of brief ? BRIEF_STAGES : DEPTH_STAGES) {
       await host.breathe()
       if (host.isStale()) return
       host.emit({ order, depth: stage(request, answer, grades) })

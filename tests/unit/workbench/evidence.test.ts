@@ -242,14 +242,14 @@ describe('the deeper look', () => {
       0.005 * (end?.heatGeneratedW ?? 0) + 5,
     )
     expect(heatBudgetData(answer.judged, answer.input.duty, [], 9)).toBeNull()
-    const chart = gradeChartData(computeGradeEvidence(request, answer), depth)
+    const chart = gradeChartData(computeGradeEvidence(request, answer), depth.otherCurves, depth.gradeBand)
     expect(chart.series.map(({ kind }) => kind)).toEqual(['present', 'other-lock', 'endless', 'set-up'])
     expect(chart.series[0]?.band).toEqual(depth.gradeBand)
   })
 })
 
 describe('working an order out', () => {
-  const order = { order: 3, request: requestFor(), gradesOnly: false }
+  const order = { order: 3, request: requestFor(), brief: false }
 
   it('brings the grade curve first, then stage by stage the rest, and says when it is done', async () => {
     const news: EvidenceNews[] = []
@@ -286,18 +286,20 @@ describe('working an order out', () => {
     expect(news.some(({ done }) => done)).toBe(false)
   })
 
-  it('stops at the grade curve when only that is asked for, and at once when the model refuses', async () => {
+  it('stops at the band when only a first look is asked for, and at once when the model refuses', async () => {
     const host = (news: EvidenceNews[]) => ({
       emit: (one: EvidenceNews) => void news.push(one),
       breathe: () => Promise.resolve(),
       isStale: () => false,
     })
     const few: EvidenceNews[] = []
-    await runEvidence({ ...order, gradesOnly: true }, host(few))
+    await runEvidence({ ...order, brief: true }, host(few))
     expect(few.map((one) => Object.keys(one).sort())).toEqual([
       ['grades', 'order'],
+      ['depth', 'order'],
       ['done', 'order'],
     ])
+    expect(Object.keys(few[1]?.depth ?? {})).toEqual(['bands'])
     const none: EvidenceNews[] = []
     const scenario = { ...order.request.scenario, load: { trailerMassKg: 290_000 } }
     await runEvidence({ ...order, request: { ...order.request, scenario } }, host(none))
