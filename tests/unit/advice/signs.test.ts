@@ -165,6 +165,20 @@ describe('advice about ratings', () => {
     )
   })
 
+  it('names just the condition that nobody gave', () => {
+    const origin = 'maker' as const
+    const request = requestFor({
+      archetype: 'diesel-pickup',
+      values: [
+        { path: 'cooling.coolers.1.rating.heatW', value: 5200, origin },
+        { path: 'cooling.coolers.1.rating.inletDifferenceK', value: 55.56, origin },
+        { path: 'cooling.coolers.1.rating.oilFlowM3S', value: 1.26e-4, origin },
+      ],
+    })
+    const text = find(request, 'rating_lacks_conditions')?.text.join('')
+    expect(text).toContain('nobody gave the air speed of')
+  })
+
   it('is content with a rating whose conditions were given', () => {
     const origin = 'maker' as const
     const request = requestFor({
