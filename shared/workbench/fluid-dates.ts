@@ -21,8 +21,14 @@ export function fluidDates(cycles: { fewest: number; most: number }, timesAWeek:
   return { fromDays: days(cycles.fewest), toDays: days(cycles.most) }
 }
 
+const DAY_FORMAT = new Intl.DateTimeFormat('en-US', {
+  year: 'numeric',
+  month: 'short',
+  day: 'numeric',
+  timeZone: 'UTC',
+})
+
 /** A day so many days on from another, as people write it: "Mar 4, 2027". */
 export function formatDay(today: Date, days: number): string {
-  const day = new Date(today.getTime() + days * 86_400_000)
-  return day.toLocaleDateString('en-US', { year: 'numeric', month: 'short', day: 'numeric', timeZone: 'UTC' })
+  return DAY_FORMAT.format(new Date(today.getTime() + days * 86_400_000))
 }

@@ -16,7 +16,9 @@ import { MOST_OTHERS, type WorkbenchRequest } from './request'
 const AXIS_ENDS = [0.08, 0.12, 0.16, 0.2, 0.3, 0.45] as const
 /** Steepest grade looked at for the grade that is held. */
 export const STEEPEST_GRADE = 0.45
+/** Points of a curve; those of other set-ups are only there to be compared with. */
 const POINTS = 24
+const FEW_POINTS = 12
 
 /** The rungs of one place as lines a chart can draw. */
 export function chartLimits(place: Place, limits: Limits): RungLimit[] {
@@ -89,6 +91,7 @@ export function computeOtherCurves(request: WorkbenchRequest, evidence: GradeCha
         hill: findHill(inputs.judged.duty),
         climb: climbOfInput(inputs.judged),
         maxGrade: evidence.maxGrade,
+        points: FEW_POINTS,
       })
       return points.length === 0 ? [] : [{ id: setup.id, name: setup.name, kind: 'set-up' as const, points }]
     } catch (error) {
@@ -137,11 +140,13 @@ interface CurveRequest {
   hill: Hill
   climb: MetClimb | undefined
   maxGrade: number
+  points?: number
 }
 
 /** A curve over the grades of the axis, its jumps found to a hundredth of a percent. */
 export function gradeCurve(input: HeatInput, request: CurveRequest): GradePoint[] {
-  const grades = Array.from({ length: POINTS + 1 }, (_, index) => (request.maxGrade * index) / POINTS)
+  const steps = request.points ?? POINTS
+  const grades = Array.from({ length: steps + 1 }, (_, index) => (request.maxGrade * index) / steps)
   const points = askGrades(input, request, grades)
   return withJumpsFound(points, input, request)
 }

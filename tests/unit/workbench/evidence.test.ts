@@ -229,7 +229,7 @@ describe('the deeper look', () => {
     const quick = computeQuickDepth(request, answer, computeGradeEvidence(request, answer))
     expect(Object.keys(quick).sort()).toEqual(['alternatives', 'bands', 'fluid', 'otherCurves', 'setups'])
     expect(quick.bands).toEqual(depth.bands)
-    expect(JSON.stringify(quick).length).toBeLessThan(9000)
+    expect(JSON.stringify(quick).length).toBeLessThan(6000)
   })
 
   it('hands the charts what they draw: every stretch, every watt, the band and the other set-ups', () => {
