@@ -10,7 +10,7 @@ import { type ReferenceInput, ReferenceModel, ReferenceRefusal, type Temperature
  * Two implementations of the same equations, written apart, on random trucks. Where they disagree, one of them has
  * misread an equation or lost accuracy. LONGPULL_DIFFERENTIAL_RUNS asks for more trucks (the deep run does).
  */
-const RUNS = Number(process.env.LONGPULL_DIFFERENTIAL_RUNS ?? 4)
+const RUNS = Number(process.env.LONGPULL_DIFFERENTIAL_RUNS ?? 2)
 const SEED = Number(process.env.LONGPULL_DIFFERENTIAL_SEED ?? 20261201)
 const STEP_S = 0.5
 
@@ -50,12 +50,23 @@ function refusalOf(run: () => unknown): string | undefined {
   return undefined
 }
 
+/** No segment longer than five minutes: the second implementation takes small steps. */
+function shortened(input: HeatInput): HeatInput {
+  const mostS = 300
+  const segments = input.duty.segments.map((segment) => {
+    if (segment.kind === 'steady' && segment.distanceM !== undefined)
+      return { ...segment, distanceM: Math.min(segment.distanceM, mostS * segment.speedMps) }
+    return { ...segment, durationS: Math.min(segment.durationS ?? mostS, mostS) }
+  })
+  return { ...input, duty: { ...input.duty, segments } }
+}
+
 const TEMPERATURES = ['sumpC', 'coolerInletC', 'caseC', 'coolantC', 'axleC', 'transferCaseC'] as const
 
 describe('the model against a second implementation of the same equations', () => {
   it('gives the same duty as driven, and the same refusals', () => {
     fc.assert(
-      fc.property(arbitraryInput({ maxSegments: 2 }), (input) => {
+      fc.property(arbitraryInput({ maxSegments: 2 }).map(shortened), (input) => {
         const refusal = refusalOf(() => new ReferenceModel(asReference(input)).run(1e9))
         expect(refusalOf(() => estimate(input))).toBe(refusal)
         fc.pre(refusal === undefined)
