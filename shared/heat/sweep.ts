@@ -94,18 +94,18 @@ export class GradeRunner {
 /**
  * Temperatures over grade at one speed.
  * @param request - input, speed, grades, road conditions; with `climb` at the top of a climb, without it at equilibrium
- * @param foot - with `climb`: where the drive before it has left every temperature, in place of the climb's start, which
+ * @param request.foot - with `climb`: where the drive before it has left every temperature, in place of the climb's start, which
  *   takes converter and case to be as warm as the pan
  * @returns a point per grade; a grade that cannot be climbed says so
  * @throws AppError rating_impossible, model_refuses
  */
-export function sweep(request: SweepRequest, foot?: FootOfClimb): Sweep {
+export function sweep(request: SweepRequest & { foot?: FootOfClimb }): Sweep {
   const runner = new GradeRunner(
     makeTruck(request.input),
     request.speedMps,
     request.segment,
     request.climb,
-    foot,
+    request.foot,
   )
   return {
     points: request.grades.map((grade, index): SweepPoint => {

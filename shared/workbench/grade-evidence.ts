@@ -152,10 +152,7 @@ export function gradeCurve(input: HeatInput, request: CurveRequest): GradePoint[
 }
 
 export function askGrades(input: HeatInput, { hill, climb }: CurveRequest, grades: number[]): GradePoint[] {
-  const { points } = sweep(
-    { input, speedMps: hill.speedMps, grades, segment: hill.road, ...asked(climb) },
-    climb?.foot,
-  )
+  const { points } = sweep({ input, speedMps: hill.speedMps, grades, segment: hill.road, ...asked(climb) })
   return points.flatMap((point) =>
     'error' in point
       ? []
@@ -213,7 +210,6 @@ export function gradeHeld(
     segment: hill.road,
     maxGrade: STEEPEST_GRADE,
     ...asked(climb),
-    ...(climb?.foot ? { foot: climb.foot } : {}),
   })
   return { grade: found.grade, endedBy: found.endedBy, maxGrade: STEEPEST_GRADE }
 }
