@@ -129,11 +129,10 @@ const startOf = ({ duty }: HeatInput): Pick<MetClimb, 'start'> =>
   duty.start === undefined ? {} : { start: duty.start }
 
 /** The climb as the model's calls take it. */
-function asked(climb: MetClimb | undefined): { climb?: Climb } {
+function asked(climb: MetClimb | undefined): { climb?: Climb; foot?: FootOfClimb } {
   if (climb === undefined) return {}
-  return {
-    climb: { distanceM: climb.distanceM, ...(climb.start === undefined ? {} : { start: climb.start }) },
-  }
+  const { distanceM, start, foot } = climb
+  return { climb: { distanceM, ...(start ? { start } : {}) }, ...(foot ? { foot } : {}) }
 }
 
 interface CurveRequest {
