@@ -2,7 +2,7 @@ import { linearAxis, toTenth, type Axis, type AxisUnit } from './axis'
 import { bandPath, interpolateAt, linePath, splitAtBreaks, splitByRung, type CurvePoint } from './curves'
 import { formatGrade, formatGradeHeld, type ChartFormats } from './formats'
 import { shortenName, spreadLabels } from './labels'
-import { RUNG_WEIGHTS, rungAt, type Rung, type RungLimit } from './rungs'
+import { RUNG_WEIGHTS, type Rung, type RungLimit } from './rungs'
 
 /** The two places the chart tells apart; never one curve against the other's limit. */
 export type GradePlace = 'coolerInletC' | 'sumpC'
@@ -470,7 +470,3 @@ function drawBreaks(
   })
   return marks
 }
-
-/** The rung of a temperature at one place of this chart. */
-export const gradeRung = (data: GradeChartData, place: GradePlace, tempC: number): Rung =>
-  rungAt(tempC, data.limits[place])

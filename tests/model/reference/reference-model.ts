@@ -983,7 +983,13 @@ export class ReferenceModel {
     return { demand: scaled.drive(v, s)!, limited: true }
   }
   /** A log with grade, replayed piecewise-constant between samples. */
-  replay(trace: { timeS: number[]; speedMps: number[]; grade: number[] } & Partial<Segment>, stepS = 0.5) {
+  replay(
+    trace: { timeS: number[]; speedMps: number[]; grade: number[] } & Omit<
+      Partial<Segment>,
+      'speedMps' | 'grade'
+    >,
+    stepS = 0.5,
+  ) {
     const st = this.input.duty.start ?? {}
     const amb = this.input.duty.ambientC
     const s0 = st.sumpC ?? amb

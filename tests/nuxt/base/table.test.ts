@@ -24,7 +24,10 @@ const mountTable = (props: object = {}) =>
       ...props,
     },
     slots: {
-      'cell-name': ({ row }: { row: { name: string } }) => h('a', { href: `/${row.name}` }, row.name),
+      'cell-name': ({ row }: { row: object }) => {
+        const name = 'name' in row ? String(row.name) : ''
+        return h('a', { href: `/${name}` }, name)
+      },
     },
     attachTo: document.body,
   })
