@@ -150,6 +150,7 @@ export function gradeCurve(input: HeatInput, request: CurveRequest): GradePoint[
   return withJumpsFound(points, input, request)
 }
 
+/** The truck at some grades of a hill, without those it cannot climb. */
 export function askGrades(input: HeatInput, { hill, climb }: CurveRequest, grades: number[]): GradePoint[] {
   const { points } = sweep({ input, speedMps: hill.speedMps, grades, segment: hill.road, ...asked(climb) })
   return points.flatMap((point) =>
