@@ -1,8 +1,10 @@
+import { v7 as uuidv7 } from 'uuid'
 import { afterAll, beforeAll, describe, expect, it } from 'vitest'
 import { startApp, type TestApp } from '../support/app'
 import { findAccessibilityProblems, openBrowser, WIDTHS, type TestBrowser } from '../support/browser'
 import { createTestDatabase, type TestDatabase } from '../support/database'
 import { signIn, type SignedIn } from '../support/sign-in'
+import { createDefaultFacts, createSheetFromFacts } from '../../shared/build-sheet/facts'
 import type { BuildList } from '../../shared/schemas/build'
 
 /** How the workbench pages stand: every width and theme, with what is awkward in them. */
@@ -32,9 +34,13 @@ describe('the workbench pages', () => {
   })
 
   const sizes = [...(Object.keys(WIDTHS) as (keyof typeof WIDTHS)[]), { width: 320, height: 640 }]
-  const states = sizes.flatMap((size) =>
-    (['light', 'dark'] as const).map((colorScheme) => ({ size, colorScheme })),
-  )
+  const states = [
+    ...sizes.map((size) => ({ size, colorScheme: 'light' as const })),
+    ...(Object.keys(WIDTHS) as (keyof typeof WIDTHS)[]).map((size) => ({
+      size,
+      colorScheme: 'dark' as const,
+    })),
+  ]
   const named = (size: (typeof sizes)[number]) => (typeof size === 'string' ? size : `${size.width} px`)
 
   for (const { size, colorScheme } of states) {
@@ -71,6 +77,64 @@ describe('the workbench pages', () => {
       await page.evaluate(() => document.documentElement.scrollWidth - document.documentElement.clientWidth),
     ).toBeLessThanOrEqual(0)
     await tested.close()
+  })
+
+  it('stand with the longest names, a dozen stretches, a second and a week of driving, and no cooler at all', async () => {
+    const longest = 'Donaudampfschifffahrtsgesellschaftskapitän'.repeat(3).slice(0, 120)
+    const draft = createSheetFromFacts({
+      ...createDefaultFacts('diesel-pickup'),
+      coolers: { inTank: false, extras: [] },
+    })
+    const climb = { kind: 'steady' as const, speedMps: 15, grade: 0.04, durationS: 1 }
+    const segments = [
+      ...Array.from({ length: 10 }, () => climb),
+      { kind: 'steady' as const, speedMps: 25, grade: 0, durationS: 600_000 },
+      { kind: 'idle' as const, durationS: 60 },
+    ]
+    const ids = { build: uuidv7(), scenario: uuidv7() }
+    const created = await estimator.call('POST', '/api/builds', {
+      body: {
+        id: ids.build,
+        name: longest,
+        customer: { id: uuidv7(), name: longest },
+        sheet: draft.sheet,
+        control: draft.control,
+        limits: draft.limits,
+        scenario: {
+          id: ids.scenario,
+          ...draft.scenario,
+          name: longest,
+          duty: { ...draft.scenario.duty, segments },
+        },
+      },
+    })
+    expect(created.status).toBe(201)
+    for (const topGear of [2, 3])
+      expect(
+        (
+          await estimator.call('POST', `/api/builds/${ids.build}/setups`, {
+            body: { id: uuidv7(), name: `${topGear}${longest}`.slice(0, 120), change: { topGear } },
+          })
+        ).status,
+      ).toBe(201)
+    for (const size of ['phone', 'desk'] as const) {
+      const tested = await browser.newPage({ baseUrl: app.baseUrl, person: estimator, size })
+      const { page } = tested
+      for (const path of [`/builds/${ids.build}`, `/builds/${ids.build}/scenarios/${ids.scenario}`]) {
+        await tested.open(path)
+        await page.getByRole('heading', { level: 1 }).waitFor()
+        expect(
+          await page.evaluate(
+            () => document.documentElement.scrollWidth - document.documentElement.clientWidth,
+          ),
+          path,
+        ).toBeLessThanOrEqual(0)
+      }
+      await page.getByRole('table', { name: 'Catalogue parts in this truck' }).waitFor()
+      expect(await findAccessibilityProblems(page)).toEqual([])
+      tested.expectNoProblems()
+      await tested.close()
+    }
   })
 
   it('have targets of 48 px on the phone, and 24 px everywhere (A3)', async () => {
