@@ -17,6 +17,7 @@ const nodeProject = (
     include: string[]
     exclude?: string[]
     globalSetup?: string[]
+    setupFiles?: string[]
     testTimeout?: number
     hookTimeout?: number
     fileParallelism?: boolean
@@ -31,6 +32,7 @@ export default defineConfig({
     projects: [
       nodeProject('unit', {
         include: ['tests/unit/**/*.test.ts', 'tests/model/**/*.test.ts'],
+        setupFiles: ['tests/support/setup-seed.ts'],
         testTimeout: 20_000,
       }),
       await defineVitestProject({

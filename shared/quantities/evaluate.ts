@@ -76,7 +76,9 @@ const OPERATIONS = {
 function combine(name: keyof typeof OPERATIONS, left: Amount, right: Amount): Amount {
   const sum = name === 'add' || name === 'subtract'
   const [a, b] = sum ? [inUnitOf(left, right), inUnitOf(right, left)] : [left, right]
-  if (sum && dimensionOf(a.value) !== dimensionOf(b.value))
+  // Two that are none of a truck's quantities may still be of different kinds, such as m⁴ and m⁵.
+  const apart = isUnit(a.value) && isUnit(b.value) && !a.value.equalBase(b.value)
+  if (sum && (apart || dimensionOf(a.value) !== dimensionOf(b.value)))
     throw new Refusal(`that adds up ${wordsOf(a.value)} and ${wordsOf(b.value)}, which do not go together.`)
   const result: unknown = OPERATIONS[name](a.value, b.value)
   if (typeof result !== 'number' && !math.isUnit(result)) throw new Refusal('that cannot be reckoned.')

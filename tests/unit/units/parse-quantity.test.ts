@@ -236,6 +236,10 @@ describe('for any text', () => {
     ...['rpm', 'ft·lb', '½', '−', '⁄', '×', '²', 'k', '.'],
   )
 
+  it('refuses a sum of two things that are no quantities of a truck and differ', () => {
+    expect(read("qt'-K5qt", 'number').ok).toBe(false)
+  })
+
   it('gives a finite number or a sentence, and never throws', () => {
     const text = fc.oneof(
       fc.array(piece, { maxLength: 14 }).map((pieces) => pieces.join('')),
