@@ -67,7 +67,16 @@ export interface GradeCurve {
   kind: GradeSeriesKind
   dash: string
   strokes: GradeStroke[]
-  label: { x: number; y: number; fromX: number; fromY: number; text: string; name: string } | null
+  /** `leader`: whether a line leads from the curve to its name; not across the plot, where the curve left it early. */
+  label: {
+    x: number
+    y: number
+    fromX: number
+    fromY: number
+    leader: boolean
+    text: string
+    name: string
+  } | null
 }
 
 export interface GradeMark {
@@ -239,6 +248,9 @@ const LEFT_PX = 40
 const TOP_PX = 30
 const BOTTOM_PX = 40
 const LABEL_PX = 17
+const LONGEST_LEADER_PX = 48
+/** Two names of limits need this much between them. */
+const LIMIT_NAME_PX = 14
 
 /** Lays the whole chart out in pixels; the component only prints it. */
 export function drawGradeChart(
@@ -271,7 +283,14 @@ function temperatureExtent(data: GradeChartData, place: GradePlace, ceilingC: nu
   const temps = data.series.flatMap((series) => series.points.map((point) => point[place]))
   const limits = data.limits[place].map((limit) => limit.fromC)
   const low = Math.min(...temps, ...limits.map((limit) => limit - 20))
-  const high = Math.max(...limits.map((limit) => limit + 6), Math.min(Math.max(...temps), ceilingC))
+  // The hill itself stays in the picture, however hot it gets there.
+  const onHill = data.series
+    .filter(({ kind }) => kind === 'present')
+    .flatMap(({ points }) =>
+      points.filter(({ grade }) => grade <= (data.hillGrade ?? 0)).map((point) => point[place]),
+    )
+  const top = Math.max(ceilingC, ...onHill.map((tempC) => tempC + 8))
+  const high = Math.max(...limits.map((limit) => limit + 6), Math.min(Math.max(...temps), top))
   return [Number.isFinite(low) ? low : 60, Number.isFinite(high) ? high : ceilingC]
 }
 
@@ -314,19 +333,31 @@ function drawPanel(data: GradeChartData, place: GradePlace, box: PanelBox): Grad
     height: box.height,
     xAxis,
     yAxis,
-    limits: limits
-      .map((limit) => ({
-        y: yAxis.at(limit.fromC),
-        text: `${limit.name} ${box.formats.degrees(limit.fromC)}`,
-        rung: limit.rung,
-      }))
-      .filter((limit) => limit.y > box.top - 1),
+    limits: drawLimits(limits, yAxis, box),
     bands: data.series.flatMap((series) => drawBands(series, place, xAxis, yAxis)),
     curves,
     breaks: data.series
       .filter((series) => series.kind === 'present' || series.kind === 'other-lock')
       .flatMap((series) => drawBreaks(series, place, xAxis, yAxis, box)),
   }
+}
+
+/** The limits as lines with names. Where two names would run into one another, the one that decides keeps its own. */
+function drawLimits(limits: readonly RungLimit[], yAxis: Axis, box: PanelBox): GradePanel['limits'] {
+  const lines = limits
+    .map((limit) => ({
+      y: yAxis.at(limit.fromC),
+      text: `${limit.name} ${box.formats.degrees(limit.fromC)}`,
+      rung: limit.rung,
+    }))
+    .filter((line) => line.y > box.top - 1)
+  const order: Rung[] = ['ease-off', 'stop', 'watch', 'fine']
+  const named: number[] = []
+  for (const line of [...lines].sort((a, b) => order.indexOf(a.rung) - order.indexOf(b.rung))) {
+    if (named.every((y) => Math.abs(y - line.y) >= LIMIT_NAME_PX)) named.push(line.y)
+    else line.text = ''
+  }
+  return lines
 }
 
 interface CurveFrame {
@@ -390,12 +421,14 @@ function labelCurves(
     const end = ends.get(curve.id)
     const name = data.series[index]?.name ?? ''
     if (!end) return
+    const leader = end.x > box.left + box.width - LONGEST_LEADER_PX
     curve.label = {
       x: box.left + box.width + 14,
       y: placed.get(curve.id) ?? end.y,
       fromX: end.x,
       fromY: end.y,
-      text: shortenName(name, most),
+      leader,
+      text: leader ? shortenName(name, most) : `${shortenName(name, most - 2)} ↑`,
       name,
     }
   })

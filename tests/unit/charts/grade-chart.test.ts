@@ -108,14 +108,36 @@ describe('grade chart', () => {
           id: 'now',
           name: 'As it is',
           kind: 'present',
-          points: [point(0, 70, false), point(10, 370, false)],
+          points: [point(0, 70, false), point(6, 250, false), point(10, 370, false)],
         },
       ],
     }
     const sump = drawGradeChart(hot, { width: 900, formats }).panels.find(({ place }) => place === 'sumpC')
     const label = sump?.curves[0]?.label
     expect(label?.fromY).toBe(sump?.top)
-    expect(label?.fromX).toBeLessThan(sump?.xAxis.at(0.05) ?? 0)
+    // It leaves far from its name: an arrow says so, and no line leads across the plot.
+    expect(label?.fromX).toBeLessThan(sump?.xAxis.at(0.09) ?? 0)
+    expect(label?.leader).toBe(false)
+    expect(label?.text).toBe('As it is ↑')
+    // The hill of the drive cycle stays in the picture all the same.
+    expect(sump?.yAxis.at(250)).toBeGreaterThan(sump?.top ?? Infinity)
+  })
+
+  it('names the limit that decides where two names would run into one another', () => {
+    const wide: GradeChartData = {
+      ...data,
+      hillGrade: 0.1,
+      series: [
+        {
+          id: 'now',
+          name: 'As it is',
+          kind: 'present',
+          points: [point(0, 70, false), point(10, 900, false)],
+        },
+      ],
+    }
+    const sump = drawGradeChart(wide, { width: 900, formats }).panels.find(({ place }) => place === 'sumpC')
+    expect(sump?.limits.map(({ text }) => text.replaceAll('\u00a0', ' '))).toEqual(['', 'Ease off 219', ''])
   })
 
   it('is titled by what it says, for every way it can end', () => {
