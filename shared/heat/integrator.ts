@@ -38,6 +38,8 @@ export interface StepRecord {
 
 /** Local error a step may have [K]. */
 export const STEP_TOLERANCE_K = 0.01
+/** The coolant must be this much more exact: a thermostat turns hundredths of a kelvin into per cents of radiator heat. */
+const COOLANT_WEIGHT = 2
 const PERTURBATION_K = 1e-4
 const SHORTEST_STEP_S = 1e-6
 const FIRST_STEP_S = 5
@@ -202,11 +204,13 @@ function trialStep(
   system.rates(to, right)
   for (let i = 0; i < n; i++) k4[i] = right[i]! + (k1[i]! - k2[i]! - (8 / 3) * k3[i]!) / h
   solveFactored(k4)
-  let error = 0
-  for (let i = 0; i < n; i++) {
-    to[i]! += k4[i]!
-    error = Math.max(error, Math.abs(k4[i]!))
-  }
+  for (let i = 0; i < n; i++) to[i]! += k4[i]!
+  const error = Math.max(
+    Math.abs(k4[SUMP]!),
+    Math.abs(k4[CONVERTER]!),
+    Math.abs(k4[CASE]!),
+    COOLANT_WEIGHT * Math.abs(k4[COOLANT]!),
+  )
   return Number.isFinite(error) ? error : Infinity
 }
 
