@@ -250,7 +250,7 @@ const BOTTOM_PX = 40
 const LABEL_PX = 17
 const LONGEST_LEADER_PX = 48
 /** Two names of limits need this much between them. */
-const LIMIT_NAME_PX = 14
+const LIMIT_NAME_PX = 16
 
 /** Lays the whole chart out in pixels; the component only prints it. */
 export function drawGradeChart(
@@ -276,7 +276,7 @@ export function drawGradeChart(
   return { width, height: sideBySide ? panelHeight : 2 * panelHeight + gap, panels }
 }
 
-const labelColumn = (panelWidth: number): number => (panelWidth < 420 ? 92 : panelWidth < 640 ? 116 : 156)
+const labelColumn = (panelWidth: number): number => (panelWidth < 420 ? 92 : panelWidth < 640 ? 140 : 156)
 
 /** Room for the curves and for all three limits, up to a ceiling: each place has its own scale, since its limits are its own. */
 function temperatureExtent(data: GradeChartData, place: GradePlace, ceilingC: number): [number, number] {
@@ -416,7 +416,7 @@ function labelCurves(
     return end ? [{ id: curve.id, y: end.y, height: LABEL_PX }] : []
   })
   const placed = spreadLabels(wanted, box.top - 6, box.top + box.height + 6)
-  const most = Math.floor((box.labelWidth - 16) / 7)
+  const most = Math.floor((box.labelWidth - 14) / 6.7)
   curves.forEach((curve, index) => {
     const end = ends.get(curve.id)
     const name = data.series[index]?.name ?? ''

@@ -1,8 +1,6 @@
 import type { RoadConditions } from '../schemas/estimate'
 import type { Duty, Segment, SteadySegment } from '../schemas/heat-input'
 
-/** From here on a stretch counts as a hill (1 %). */
-const HILL_FROM_GRADE = 0.01
 /** Speed the grades are tried at when nothing in the drive cycle is driven steadily: 45 mph. Judgement. */
 const USUAL_SPEED_MPS = 20.1168
 
@@ -25,7 +23,7 @@ export function findHill(duty: Duty): Hill {
   const steady = duty.segments.flatMap((segment, index) =>
     segment.kind === 'steady' ? [{ segment, index }] : [],
   )
-  const hills = steady.filter(({ segment }) => segment.grade >= HILL_FROM_GRADE)
+  const hills = steady.filter(({ segment }) => segment.grade > 0)
   const found =
     hills.length > 0 ? hills.reduce(steeper) : steady.reduce<Placed | undefined>(longer, undefined)
   if (found === undefined)

@@ -166,6 +166,14 @@ describe('the workbench in use', () => {
     expect(await field.inputValue()).toBe('5')
     await page.keyboard.press('PageUp')
     expect(Number(await field.inputValue())).toBeGreaterThan(6)
+
+    // A hill that is moved down to flat is still the one that is moved.
+    const grade = page.getByRole('textbox', { name: /Grade of the hill/ })
+    await grade.fill('0')
+    await grade.fill('7')
+    await saved(page)
+    await page.locator('summary', { hasText: 'Drive cycle' }).first().click()
+    await page.locator('summary', { hasText: '2. Climb 7 %' }).waitFor()
     await tested.close()
   })
 
