@@ -73,6 +73,10 @@ export class Circuit {
   private readonly airRate: Float64Array
   private radiatorAirTerm = 0
   private radiatorFullCoolantTerm = 0
+  /** Per cooler: scaled UA at the rating, oil side's share of its resistance, exponent of flow in it. */
+  private readonly uaRated: Float64Array
+  private readonly oilShare: Float64Array
+  private readonly flowExponent: Float64Array
   /** Resistances, conductances and capacity rates as last used, per cooler. */
   private readonly sinkTerm: Float64Array
   private readonly oilTerm: Float64Array
@@ -103,6 +107,9 @@ export class Circuit {
     this.nudgedLoop = makeLoopState(this.count)
     this.fullSinkTerm = new Float64Array(this.count)
     this.airRate = new Float64Array(this.count)
+    this.uaRated = Float64Array.from(coolers, (cooler) => cooler.uaRatedWK * system.coolerScale)
+    this.oilShare = Float64Array.from(coolers, (cooler) => 1 - cooler.airShare)
+    this.flowExponent = Float64Array.from(coolers, (cooler) => cooler.law.flowExponent)
     this.sinkTerm = new Float64Array(this.count)
     this.oilTerm = new Float64Array(this.count)
     this.ua = new Float64Array(this.count)
@@ -215,17 +222,16 @@ export class Circuit {
 
   /** Oil side of every cooler, and the conductance of those in air. */
   private updateOilSide(share: number): void {
-    const { chain, loopState } = this
-    const { coolers } = this.system
+    const { chain, loopState, oilRate, oilTerm, sinkTerm } = this
     const rate = loopState.oilCapacityRate * share
+    const throttled = share > 0 && share < 1
     chain.oilRate = rate
     for (let index = 0; index < this.count; index++) {
-      const cooler = coolers[index]!
-      const slow = share === 1 || share === 0 ? 1 : power(share, -cooler.law.flowExponent)
-      this.oilRate[index] = rate * loopState.shares[index]!
-      this.oilTerm[index] = (1 - cooler.airShare) * loopState.oilSide[index]! * slow
+      oilRate[index] = rate * loopState.shares[index]!
+      const term = this.oilShare[index]! * loopState.oilSide[index]!
+      oilTerm[index] = throttled ? term * power(share, -this.flowExponent[index]!) : term
       if (chain.isTank[index] === 1) continue
-      this.sinkTerm[index] = this.fullSinkTerm[index]!
+      sinkTerm[index] = this.fullSinkTerm[index]!
       this.updateConductance(index, this.airRate[index]!)
     }
   }
@@ -307,7 +313,7 @@ export class Circuit {
     }
     nudged.oilRate *= 1 + step / share
     for (let index = 0; index < this.count; index++) {
-      const termStep = (-this.system.coolers[index]!.law.flowExponent * this.oilTerm[index]! * step) / share
+      const termStep = (-this.flowExponent[index]! * this.oilTerm[index]! * step) / share
       const rateStep = (this.oilRate[index]! * step) / share
       nudged.conductance[index] =
         chain.conductance[index]! + this.conductanceStep(index, termStep, rateStep, 0)
@@ -337,10 +343,10 @@ export class Circuit {
 
   /** Change of one cooler's conductance for small changes of its resistance and capacity rates. */
   private conductanceStep(index: number, termStep: number, oilStep: number, sinkStep: number): number {
-    const { chain, system } = this
+    const { chain } = this
     if (chain.conductance[index] === 0) return 0
     const ua = this.ua[index]!
-    const uaStep = (-ua * ua * termStep) / (system.coolers[index]!.uaRatedWK * system.coolerScale)
+    const uaStep = (-ua * ua * termStep) / this.uaRated[index]!
     const exchanger = this.exchangers[index]!
     return exchanger.overUa * uaStep + exchanger.overRateA * oilStep + exchanger.overRateB * sinkStep
   }

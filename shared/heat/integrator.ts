@@ -37,7 +37,7 @@ export interface StepRecord {
 }
 
 /** Local error a step may have [K]. */
-export const STEP_TOLERANCE_K = 0.01
+export const STEP_TOLERANCE_K = 0.02
 /** The coolant must be this much more exact: a thermostat turns hundredths of a kelvin into per cents of radiator heat. */
 const COOLANT_WEIGHT = 2
 const PERTURBATION_K = 1e-4

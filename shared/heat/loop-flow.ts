@@ -207,6 +207,8 @@ export class LoopTable implements LoopSource {
   private readonly stride: number
   private readonly nodes: Float64Array
   private readonly filled: Uint8Array
+  /** 1 where a node and the three after it are filled. */
+  private readonly ready: Uint8Array
   private readonly scratch: LoopState
   private readonly hasParallel: boolean
 
@@ -217,6 +219,7 @@ export class LoopTable implements LoopSource {
     this.stride = 2 + loop.coolers.length * (this.hasParallel ? 2 : 1)
     this.nodes = new Float64Array(NODES * this.stride)
     this.filled = new Uint8Array(NODES)
+    this.ready = new Uint8Array(NODES)
     this.scratch = makeLoopState(loop.coolers.length)
   }
 
@@ -235,6 +238,11 @@ export class LoopTable implements LoopSource {
     this.filled[node] = 1
   }
 
+  private prepare(base: number): void {
+    for (let node = base; node < base + 4; node++) if (this.filled[node] === 0) this.fill(node)
+    this.ready[base] = 1
+  }
+
   /** Writes the loop state at a sump temperature [°C]. */
   read(sumpC: number, state: LoopState): void {
     if (!(sumpC >= COLDEST_VISCOSITY_C && sumpC < LAST_TABLE_C)) {
@@ -243,7 +251,7 @@ export class LoopTable implements LoopSource {
     }
     const position = (sumpC - FIRST_NODE_C) / NODE_STEP_K
     const base = Math.floor(position) - 1
-    for (let node = base; node < base + 4; node++) if (this.filled[node] === 0) this.fill(node)
+    if (this.ready[base] === 0) this.prepare(base)
     const t = position - base - 1
     const w0 = (-t * (t - 1) * (t - 2)) / 6
     const w1 = ((t + 1) * (t - 1) * (t - 2)) / 2
