@@ -33,7 +33,7 @@ export interface AirSide {
 
 /** Ram air and fan together: cube root of the sum of cubes. */
 function mixedVelocity(ram: number, fan: number): number {
-  return ram === 0 ? fan : fan === 0 ? ram : Math.cbrt(ram ** 3 + fan ** 3)
+  return ram === 0 ? fan : fan === 0 ? ram : Math.cbrt(ram * ram * ram + fan * fan * fan)
 }
 
 /**

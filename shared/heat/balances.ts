@@ -56,8 +56,6 @@ export class ThermalPoint {
   readonly masses: ThermalMasses
   readonly heatScale: number
   readonly underbodyC: number
-  axle: LoneBody = { endC: 0, timeS: 1 }
-  transferCase: LoneBody = { endC: 0, timeS: 1 }
   /** Heats after calibration [W]; drag at the reference viscosity. */
   converterW = 0
   fixedW = 0
@@ -67,6 +65,8 @@ export class ThermalPoint {
   caseConductance = 0
 
   private readonly system: CoolingSystem
+  private point: OperatingPoint | undefined
+  private airSpeed = 0
 
   constructor(
     point: OperatingPoint | undefined,
@@ -91,20 +91,25 @@ export class ThermalPoint {
     this.fixedW = heatScale * (point.gearW + point.shiftW + point.pumpW)
     this.spinReferenceW = heatScale * point.spinW
     this.engineToCoolantW = IDLE_COOLANT_HEAT_W + masses.coolantHeatRatio * point.enginePowerW
-    const transferPerArea = surfaceHeatTransfer(CASE_WIND_SHARE * airSpeed)
-    const caseTransfer = transferPerArea * masses.caseAreaM2
+    const caseTransfer = surfaceHeatTransfer(CASE_WIND_SHARE * airSpeed) * masses.caseAreaM2
     this.panConductance = PAN_SHARE * caseTransfer
     this.caseConductance = (1 - PAN_SHARE) * caseTransfer
-    this.axle = this.loneBody(
-      point.axleW,
-      surfaceHeatTransfer(AXLE_WIND_SHARE * airSpeed) * masses.axle.surfaceM2,
-      masses.axle.heatCapacityJK,
-    )
-    this.transferCase = this.loneBody(
-      point.transferCaseW,
-      transferPerArea * masses.transferCase.surfaceM2,
-      masses.transferCase.heatCapacityJK,
-    )
+    this.point = point
+    this.airSpeed = airSpeed
+  }
+
+  /** Axle oil: its end value and time constant at this point. */
+  get axle(): LoneBody {
+    const { surfaceM2, heatCapacityJK } = this.masses.axle
+    const conductance = surfaceHeatTransfer(AXLE_WIND_SHARE * this.airSpeed) * surfaceM2
+    return this.loneBody(this.point?.axleW ?? 0, conductance, heatCapacityJK)
+  }
+
+  /** Transfer-case oil likewise; it sits where the transmission does. */
+  get transferCase(): LoneBody {
+    const { surfaceM2, heatCapacityJK } = this.masses.transferCase
+    const conductance = surfaceHeatTransfer(CASE_WIND_SHARE * this.airSpeed) * surfaceM2
+    return this.loneBody(this.point?.transferCaseW ?? 0, conductance, heatCapacityJK)
   }
 
   private loneBody(heatW: number, conductance: number, heatCapacityJK: number): LoneBody {

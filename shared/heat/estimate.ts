@@ -117,10 +117,13 @@ function driveOn(
 ): SegmentResult {
   thermal.set(point)
   const { temperatures } = at
+  const { axle, transferCase } = thermal
   const run: SegmentRun = {
     thermal,
     durationS,
     tally: freshTally(),
+    axle,
+    transferCase,
     axleStartC: at.axleC,
     transferCaseStartC: at.transferCaseC,
     startS: at.timeS,
@@ -129,8 +132,8 @@ function driveOn(
   }
   if (at.timeS === 0) writeState(output.writer, at, thermal.stateAt(temperatures, at.axleC, at.transferCaseC))
   driveSegment(run, temperatures, truck.resolved.fluidLife)
-  at.axleC = loneBodyAt(thermal.axle, at.axleC, durationS)
-  at.transferCaseC = loneBodyAt(thermal.transferCase, at.transferCaseC, durationS)
+  at.axleC = loneBodyAt(axle, at.axleC, durationS)
+  at.transferCaseC = loneBodyAt(transferCase, at.transferCaseC, durationS)
   at.timeS += durationS
   const end = thermal.stateAt(temperatures, at.axleC, at.transferCaseC)
   writeState(output.writer, at, end)

@@ -278,16 +278,6 @@ export class LoopTable implements LoopSource {
   }
 }
 
-/** Weights of a cubic through four even nodes at -1, 0, 1, 2. */
-function cubicWeights(t: number): [number, number, number, number] {
-  return [
-    (-t * (t - 1) * (t - 2)) / 6,
-    ((t + 1) * (t - 1) * (t - 2)) / 2,
-    (-(t + 1) * t * (t - 2)) / 2,
-    ((t + 1) * t * (t - 1)) / 6,
-  ]
-}
-
 /** Steps of feed share between the tables a log is replayed from. */
 const SHARE_STEPS = 32
 
@@ -322,11 +312,17 @@ export class SharedLoopTables implements LoopSource {
       return
     }
     const base = Math.min(SHARE_STEPS - 3, Math.max(1, Math.floor(position) - 1))
-    const weights = cubicWeights(position - base - 1)
+    const t = position - base - 1
+    const w0 = (-t * (t - 1) * (t - 2)) / 6
+    const w1 = ((t + 1) * (t - 1) * (t - 2)) / 2
+    const w2 = (-(t + 1) * t * (t - 2)) / 2
+    const w3 = ((t + 1) * t * (t - 1)) / 6
     const { parts } = this
     for (let k = 0; k < 4; k++) this.table(base + k).read(sumpC, parts[k]!)
-    const [p0, p1, p2, p3] = parts as [LoopState, LoopState, LoopState, LoopState]
-    const [w0, w1, w2, w3] = weights
+    const p0 = parts[0]!
+    const p1 = parts[1]!
+    const p2 = parts[2]!
+    const p3 = parts[3]!
     state.volumeFlow = w0 * p0.volumeFlow + w1 * p1.volumeFlow + w2 * p2.volumeFlow + w3 * p3.volumeFlow
     state.oilCapacityRate =
       w0 * p0.oilCapacityRate + w1 * p1.oilCapacityRate + w2 * p2.oilCapacityRate + w3 * p3.oilCapacityRate

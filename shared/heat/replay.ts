@@ -20,7 +20,7 @@ import { bisect, pointOfState, roadPoint } from './operating-point'
 import type { RoadPoint } from './operating-point'
 import type { Powertrain } from './resolve'
 import { roadForce } from './road-load'
-import { traceGrades, traceRoad } from './trace'
+import { isRoadPerSample, traceGrades, traceRoad } from './trace'
 import { makeThermal, makeTruck, startTemperatures } from './truck'
 import type { Replay } from './types'
 
@@ -156,16 +156,26 @@ function sampleState(
   }
   const force = speedMps > 0 ? roadForce(road.load, speedMps, acceleration) : 0
   if (force <= 0) return restingState(powertrain, road, speedMps, logged)
-  const demandOf = (share: number) => demandAtOutput(powertrain, road.range, share * force, speedMps)
-  const state = drivenState(powertrain, road, demandOf(1), logged)
+  const state = drivenState(powertrain, road, demandAtOutput(powertrain, road.range, force, speedMps), logged)
   if (state !== undefined) return state
   counts.forceLimited++
-  const carries = (share: number) => drivenState(powertrain, road, demandOf(share), logged) !== undefined
-  if (!carries(SMALLEST_FORCE_SHARE)) return restingState(powertrain, road, speedMps, logged)
-  const share = bisect(SMALLEST_FORCE_SHARE, 1, carries)
-  return (
-    drivenState(powertrain, road, demandOf(share), logged) ?? restingState(powertrain, road, speedMps, logged)
-  )
+  return limitedState(powertrain, road, speedMps, force, logged)
+}
+
+/** The largest share of a force that the engine has; resting where it has none at this speed. */
+function limitedState(
+  powertrain: Powertrain,
+  road: RoadPoint,
+  speedMps: number,
+  force: number,
+  logged: Logged,
+): DriveState {
+  const stateOf = (share: number) =>
+    drivenState(powertrain, road, demandAtOutput(powertrain, road.range, share * force, speedMps), logged)
+  const carries = (share: number) => stateOf(share) !== undefined
+  const share = carries(SMALLEST_FORCE_SHARE) ? bisect(SMALLEST_FORCE_SHARE, 1, carries) : undefined
+  const state = share === undefined ? undefined : stateOf(share)
+  return state ?? restingState(powertrain, road, speedMps, logged)
 }
 
 const first = new Float64Array(COUPLED)
@@ -227,6 +237,8 @@ export function replay(request: ReplayRequest): Replay {
   const tables = new SharedLoopTables(truck.system.loop)
   const counts = { forceLimited: 0, contradicted: 0 }
   const samples = trace.timeS.length
+  const changing = isRoadPerSample(trace)
+  let road = roadPoint(powertrain, traceRoad(trace, 0), 0)
   const answer = {
     timeS: [...trace.timeS],
     sumpC: new Array<number>(samples),
@@ -241,7 +253,8 @@ export function replay(request: ReplayRequest): Replay {
     const lengthS = trace.timeS[index + 1]! - trace.timeS[index]!
     const mean = 0.5 * (trace.speedMps[index]! + trace.speedMps[index + 1]!)
     const speedMps = mean < STANDING_MPS ? 0 : mean
-    const road = roadPoint(powertrain, traceRoad(trace, index), 0.5 * (grades[index]! + grades[index + 1]!))
+    if (changing) road = roadPoint(powertrain, traceRoad(trace, index), 0)
+    road.load.grade = 0.5 * (grades[index]! + grades[index + 1]!)
     const acceleration = (trace.speedMps[index + 1]! - trace.speedMps[index]!) / lengthS
     const state = sampleState(powertrain, road, speedMps, acceleration, loggedAt(trace, index), counts)
     const point = pointOfState(powertrain, 'steady', state, speedMps, road.load.headwindMps, true)

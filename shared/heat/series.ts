@@ -1,5 +1,5 @@
 import { CONVERTER, COOLANT, SUMP, loneBodyAt } from './balances'
-import type { ThermalPoint } from './balances'
+import type { LoneBody, ThermalPoint } from './balances'
 import { integrate, onStep } from './integrator'
 import type { StepRecord } from './integrator'
 import type { ResolvedFluidLife } from './resolve'
@@ -58,6 +58,8 @@ export interface SegmentRun {
   thermal: ThermalPoint
   durationS: number
   tally: Tally
+  axle: LoneBody
+  transferCase: LoneBody
   axleStartC: number
   transferCaseStartC: number
   /** Time at which the segment starts [s], and step of the series [s]. */
@@ -117,7 +119,7 @@ function writePoint(run: SegmentRun, step: StepRecord, atS: number, share: numbe
     onStep(step, CONVERTER, share),
     returnC,
     onStep(step, COOLANT, share),
-    loneBodyAt(run.thermal.axle, run.axleStartC, atS),
-    loneBodyAt(run.thermal.transferCase, run.transferCaseStartC, atS),
+    loneBodyAt(run.axle, run.axleStartC, atS),
+    loneBodyAt(run.transferCase, run.transferCaseStartC, atS),
   )
 }

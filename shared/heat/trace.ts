@@ -67,3 +67,8 @@ export function traceRoad(trace: Trace, index: number): Road {
       : headwindMps,
   }
 }
+
+/** Whether a log says anything about road or levers sample by sample. */
+export function isRoadPerSample({ surface, range, topGear, headwindMps }: Trace): boolean {
+  return [surface, range, topGear, headwindMps].some(Array.isArray)
+}
