@@ -1,4 +1,5 @@
 import type { GradeChartData } from '#shared/charts/grade-chart'
+import type { Answer } from '#shared/workbench/answer'
 import type { Depth } from '#shared/workbench/depth'
 import type { DepthRequest } from '#shared/workbench/request'
 import { runEvidence, type EvidenceNews, type EvidenceOrder } from '#shared/workbench/run-evidence'
@@ -42,15 +43,22 @@ function workHere(hear: (news: EvidenceNews) => void): Clerk {
   }
 }
 
+/** Parts of the deeper look that come within this time of one another are drawn together: every drawing costs a frame. */
+const TOGETHER_MS = 120
+
 /**
  * The evidence under an answer, worked out beside the page. Orders are numbered; news of an earlier order never replaces
- * what a later one brought, and the last order is always carried through.
+ * what a later one brought, and the last order is always carried through. The answer it stands under is handed on with the
+ * grade curve, so that one keystroke draws the answer alone and the next frame everything that explains it.
  */
 export function useEvidence(options: {
+  initialSubject: Answer | null
   initialGrades: GradeChartData | null
   initialDepth: Partial<Depth> | null
   brief?: boolean
 }) {
+  /** The answer that the evidence explains. */
+  const subject = shallowRef(options.initialSubject)
   const grades = shallowRef(options.initialGrades)
   const depth = shallowRef<Partial<Depth> | null>(options.initialDepth)
   /** Whether what is shown belongs to the last order. */
@@ -66,28 +74,36 @@ export function useEvidence(options: {
   }
 
   function hear(news: EvidenceNews) {
-    if (news.grades && isNews('grades', news.order)) grades.value = news.grades
+    if (news.grades && isNews('grades', news.order)) {
+      grades.value = news.grades
+      if (waiting?.order === news.order) subject.value = waitingSubject
+    }
     const fresh = Object.entries(news.depth ?? {}).filter(([key]) => isNews(key, news.order))
     if (fresh.length > 0) gather(Object.fromEntries(fresh))
+    if (news.done) show()
     if (news.done && news.order === lastOrder) upToDate.value = true
   }
 
-  // Several stages often arrive within one frame: they are shown together.
   let gathered: Partial<Depth> | undefined
+  let timer: ReturnType<typeof setTimeout> | undefined
   function gather(fresh: Partial<Depth>) {
-    if (gathered === undefined) requestAnimationFrame(show)
+    timer ??= setTimeout(show, TOGETHER_MS)
     gathered = { ...gathered, ...fresh }
   }
   function show() {
+    clearTimeout(timer)
+    timer = undefined
     if (gathered) depth.value = { ...depth.value, ...gathered }
     gathered = undefined
   }
 
   let waiting: EvidenceOrder | undefined
+  let waitingSubject: Answer | null = null
 
-  function order(request: DepthRequest) {
+  function order(request: DepthRequest, answer: Answer) {
     lastOrder += 1
     upToDate.value = false
+    waitingSubject = answer
     waiting = { order: lastOrder, request, brief: options.brief ?? false }
     clerk ??= hireWorker(hear, replaceWorker) ?? workHere(hear)
     clerk.send(waiting)
@@ -100,6 +116,9 @@ export function useEvidence(options: {
     if (waiting) clerk.send(waiting)
   }
 
-  onScopeDispose(() => clerk?.close())
-  return { grades, depth, upToDate, order }
+  onScopeDispose(() => {
+    clearTimeout(timer)
+    clerk?.close()
+  })
+  return { subject, grades, depth, upToDate, order }
 }

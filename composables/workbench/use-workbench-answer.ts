@@ -35,6 +35,7 @@ export function useWorkbenchAnswer(
   const refusal = shallowRef<Refusal | null>(first.kind === 'refusal' ? first : null)
   const answer = shallowRef<Answer | null>(first.kind === 'answer' ? first : null)
   const evidence = useEvidence({
+    initialSubject: answer.value,
     initialGrades: answer.value ? firstGrades(request.value, answer.value) : null,
     initialDepth: options.initialDepth ?? null,
     brief: options.brief,
@@ -60,7 +61,7 @@ export function useWorkbenchAnswer(
     refusal.value = next.kind === 'refusal' ? next : null
     if (next.kind === 'answer') {
       answer.value = next
-      evidence.order(withExtras())
+      evidence.order(withExtras(), next)
     }
   })
 
@@ -75,13 +76,13 @@ export function useWorkbenchAnswer(
 
   /** Asks for the evidence again, for the same answer: the catalogue came, or parts are to be mounted elsewhere. */
   function deepen() {
-    if (answer.value) evidence.order(withExtras())
+    if (answer.value) evidence.order(withExtras(), answer.value)
   }
 
   onScopeDispose(() => clearTimeout(timer))
 
-  const { grades, depth, upToDate } = evidence
-  return { answer, refusal, ghost, settledCount, grades, depth, upToDate, deepen, startHere }
+  const { subject, grades, depth, upToDate } = evidence
+  return { answer, refusal, ghost, settledCount, subject, grades, depth, upToDate, deepen, startHere }
 }
 
 function firstGrades(request: WorkbenchRequest, answer: Answer): GradeChartData | null {
